@@ -54,11 +54,11 @@ interface MachineRow {
   crewId: string | null;
 }
 
-/** A manager books every machine of the account, a crew lead those of the crew and those of no crew. */
+/** A manager books every machine of the account, a crew lead those of the crew. */
 export function mayBookMachine(actor: Actor | null, machine: MachineRow | null): boolean {
   if (!actor || !machine || machine.accountId !== actor.accountId) return false;
   if (actor.roles.includes('manager')) return true;
-  return actor.roles.includes('crew_lead') && (machine.crewId === null || machine.crewId === actor.crewId);
+  return actor.roles.includes('crew_lead') && machine.crewId !== null && machine.crewId === actor.crewId;
 }
 
 /** Undo is for whoever may make that move. */
