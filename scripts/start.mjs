@@ -4,6 +4,7 @@ import { setTimeout as sleep } from 'node:timers/promises';
 import { ensureClientBuilt } from './lib/build.mjs';
 import { logDir, root, stateDir } from './lib/checkout.mjs';
 import { releaseCluster } from './lib/cluster.mjs';
+import { registerUse } from './lib/clusterUses.mjs';
 import { ensureDatabase } from './lib/databases.mjs';
 import { requireRealServices, usualPorts } from './lib/environment.mjs';
 import { Failure, failWith } from './lib/failure.mjs';
@@ -35,6 +36,8 @@ function noteChild(child) {
     { name: child.name, ...child.identity },
   ];
   writeRun(run);
+  // Should this parent be killed, its children still need the database until somebody ends them.
+  if (!process.env.DATABASE_URL) registerUse(child.identity);
 }
 
 /** Another start holds the lock: wait until it serves and say where. */

@@ -80,7 +80,7 @@ export function serverEnvironment({
   return {
     LOG_LEVEL: 'info',
     TRUSTED_HOPS: '0',
-    MAIL_FROM: 'Benchbell <bell@example.com>',
+    MAIL_FROM: 'bell@example.com',
     ...env,
     ...secrets,
     ...services,
