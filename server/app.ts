@@ -1,0 +1,33 @@
+import express, { type Express } from 'express';
+import type { Services } from '#server/lib/context';
+import { answerErrors, unknownAddress } from '#server/middlewares/errors';
+import { requestId, securityHeaders } from '#server/middlewares/headers';
+import { refuseCrossSite } from '#server/middlewares/crossSite';
+import { sessions } from '#server/middlewares/session';
+import { mountRoutes } from '#server/routes/mount';
+import { routeTable } from '#server/routes/table';
+import { pages } from '#server/lib/pages';
+
+const BODY_LIMIT = '100kb';
+
+/** Builds the application; whoever calls it listens. */
+export async function createApp(services: Services): Promise<Express> {
+  const app = express();
+  app.disable('x-powered-by');
+  app.set('trust proxy', services.env.TRUSTED_HOPS);
+  app.set('query parser', 'simple');
+  app.use(requestId, securityHeaders(services.env), refuseCrossSite(services.env));
+  app.use(
+    '/api',
+    express.json({
+      limit: BODY_LIMIT,
+      type: ['application/json', 'application/csp-report', 'application/reports+json'],
+    }),
+  );
+  app.use('/api', ...sessions(services));
+  mountRoutes(app, services, routeTable(services));
+  app.use(['/api', '/hooks'], unknownAddress);
+  app.use(await pages(services));
+  app.use(answerErrors(services));
+  return app;
+}
