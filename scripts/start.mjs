@@ -3,7 +3,7 @@ import { join } from 'node:path';
 import { setTimeout as sleep } from 'node:timers/promises';
 import { ensureClientBuilt } from './lib/build.mjs';
 import { logDir, root, stateDir } from './lib/checkout.mjs';
-import { releaseCluster } from './lib/cluster.mjs';
+import { guardCluster, releaseCluster } from './lib/cluster.mjs';
 import { registerUse } from './lib/clusterUses.mjs';
 import { ensureDatabase } from './lib/databases.mjs';
 import { requireRealServices, usualPorts } from './lib/environment.mjs';
@@ -108,7 +108,9 @@ async function bringUp() {
   Object.assign(run, { addresses: stack.addresses, ready: true });
   writeRun(run);
   say(`\nBenchbell is running.\n${summary(run)}`);
-  for (const child of stack.children) void keepAlive(child, say, () => ending);
+  const isEnding = () => ending;
+  for (const child of stack.children) void keepAlive(child, say, isEnding);
+  if (!process.env.DATABASE_URL) void guardCluster(isEnding);
 }
 
 async function main() {

@@ -142,6 +142,16 @@ export async function ensureCluster() {
   });
 }
 
+/** Starts the cluster again, on its port, when something killed it; the server's pools then find it again. */
+export async function guardCluster(isEnding, everyMs = 3_000) {
+  while (!isEnding()) {
+    await sleep(everyMs, undefined, { ref: false });
+    if (isEnding() || runningServer()) continue;
+    say('PostgreSQL has ended; starting it again.');
+    await ensureCluster().catch((error) => say(error.message));
+  }
+}
+
 /** Runs `work` while no other process sets up the same cluster's roles and databases. */
 export function withClusterLock(work) {
   return withLock(`${lockFile}.databases`, work);
