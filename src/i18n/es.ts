@@ -1,0 +1,9 @@
+import { mergeAreas, type Areas } from './mergeAreas';
+
+/** The app's words in Spanish, as one chunk that is fetched only for its readers. The stub and the server carry their own. */
+export const messages = mergeAreas(
+  import.meta.glob<Areas>(
+    ['../../shared/locales/es/*.json', '!../../shared/locales/es/{stub,notices}.json'],
+    { eager: true, import: 'default' },
+  ),
+);
