@@ -40,19 +40,25 @@ export const BookingGuest = z.strictObject({
 });
 
 /** POST /api/shops/:slug/bookings, with an Idempotency-Key. `guest` is left out by whoever is signed in. */
-export const BookBody = z.strictObject({
-  arrivesAt: instant,
-  machines: z
-    .array(BookingMachine)
-    .min(1, 'errors.field.machines')
-    .max(MACHINES_MAX, 'errors.field.machines'),
-  /** Anything the shop should know about the visit as a whole. */
-  note: optionalText(500),
-  language,
-  /** Whether the person agreed to texts about the machines; without it, notices go by e-mail alone. */
-  textConsent: z.boolean(),
-  guest: BookingGuest.optional(),
-});
+export const BookBody = z
+  .strictObject({
+    arrivesAt: instant,
+    machines: z
+      .array(BookingMachine)
+      .min(1, 'errors.field.machines')
+      .max(MACHINES_MAX, 'errors.field.machines'),
+    /** Anything the shop should know about the visit as a whole. */
+    note: optionalText(500),
+    language,
+    /** Whether the person agreed to texts about the machines; without it, notices go by e-mail alone. */
+    textConsent: z.boolean(),
+    guest: BookingGuest.optional(),
+  })
+  .refine((body) => !body.guest || body.textConsent || body.guest.email !== '', {
+    // Somebody who wants no texts and gives no address could not be told anything.
+    path: ['guest', 'email'],
+    message: 'errors.field.reach',
+  });
 export type BookBody = z.infer<typeof BookBody>;
 
 export interface BookAnswer {

@@ -43,16 +43,25 @@ export const CheckInInput = z
   });
 
 /** POST /api/shop/jobs/:tag/moves, with an Idempotency-Key. */
-export const MoveBody = z.strictObject({
-  /** The version of the job that the move was based on. */
-  version: z.number().int().min(1),
-  to: z.enum(STAGES),
-  outcome: z.enum(OUTCOMES).nullable().default(null),
-  partsReason: z.enum(PARTS_REASONS).nullable().default(null),
-  lines: z.array(SignedLineInput).max(6).default([]),
-  checkIn: CheckInInput.optional(),
-  note: optionalText(500),
-});
+export const MoveBody = z
+  .strictObject({
+    /** The version of the job that the move was based on. */
+    version: z.number().int().min(1),
+    to: z.enum(STAGES),
+    outcome: z.enum(OUTCOMES).nullable().default(null),
+    partsReason: z.enum(PARTS_REASONS).nullable().default(null),
+    lines: z.array(SignedLineInput).max(6).default([]),
+    checkIn: CheckInInput.optional(),
+    note: optionalText(500),
+  })
+  .superRefine((body, ctx) => {
+    if (body.to !== 'checked_in') return;
+    if (!body.checkIn) {
+      ctx.addIssue({ code: 'custom', path: ['checkIn'], message: 'errors.field.required' });
+    } else if (!(body.checkIn.tankBled && body.checkIn.fuelOff) && body.note === '') {
+      ctx.addIssue({ code: 'custom', path: ['note'], message: 'errors.field.why_not_made_safe' });
+    }
+  });
 export type MoveBody = z.infer<typeof MoveBody>;
 
 /** POST /api/shop/jobs/:tag/undo, with an Idempotency-Key: takes back the latest standing move within its grace. */

@@ -36,3 +36,8 @@ export interface StubView {
   };
   machines: StubMachine[];
 }
+
+/** Details of the error `link_ended`: whom to turn to. */
+export interface LinkEndedDetails {
+  shop: { slug: string; name: string; phone: string };
+}

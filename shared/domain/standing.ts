@@ -1,0 +1,48 @@
+/**
+ * Which of a job's events still stand. An undone move is taken back; a correction takes back all moves since the job
+ * last stood at the stage it is put back to. Moves taken back void their signed lines.
+ */
+import type { Stage } from './stages';
+
+export interface EventLike {
+  id: string;
+  kind: string;
+  toStage: Stage | null;
+  undoesEventId: string | null;
+}
+
+export interface Standing<E> {
+  /** The events that lead to the present stage, oldest first; the last one says where the job stands. */
+  standing: E[];
+  undone: Set<string>;
+  /** Moves taken back by a correction. */
+  corrected: Set<string>;
+}
+
+/** Folds a job's events, given in order. Events that move nothing (a replaced tag) are passed over. */
+export function foldEvents<E extends EventLike>(events: readonly E[]): Standing<E> {
+  const standing: E[] = [];
+  const undone = new Set<string>();
+  const corrected = new Set<string>();
+  for (const event of events) {
+    if (event.kind === 'undone') {
+      const index = standing.findIndex((earlier) => earlier.id === event.undoesEventId);
+      if (index >= 0) standing.splice(index, 1);
+      if (event.undoesEventId) undone.add(event.undoesEventId);
+    } else if (event.kind === 'corrected') {
+      for (const taken of takenBack(standing, event.toStage)) corrected.add(taken.id);
+      standing.length -= takenBack(standing, event.toStage).length;
+      standing.push(event);
+    } else if (event.kind === 'booked' || event.kind === 'moved') {
+      standing.push(event);
+    }
+  }
+  return { standing, undone, corrected };
+}
+
+/** The standing events that a correction back to `stage` takes back: those after the job last stood there. */
+export function takenBack<E extends EventLike>(standing: readonly E[], stage: Stage | null): E[] {
+  const last = standing.findLastIndex((event) => event.toStage === stage);
+  // A stage that it never stood at: all but the booking itself.
+  return standing.slice(Math.max(last, 0) + 1);
+}
