@@ -1,9 +1,8 @@
-import { fileURLToPath } from 'node:url';
-import vue from '@vitejs/plugin-vue';
 import { defineConfig } from 'vitest/config';
 
 process.env.TZ = 'UTC';
 
+const common = { env: { TZ: 'UTC', NODE_ENV: 'test' }, pool: 'forks', restoreMocks: true } as const;
 const withPostgres = {
   globalSetup: ['tests/support/globalSetup.ts'],
   testTimeout: 30_000,
@@ -11,12 +10,8 @@ const withPostgres = {
 };
 
 export default defineConfig({
-  plugins: [vue()],
-  resolve: { alias: { '@/': fileURLToPath(new URL('./src/', import.meta.url)) } },
   test: {
-    env: { TZ: 'UTC', NODE_ENV: 'test' },
-    pool: 'forks',
-    restoreMocks: true,
+    ...common,
     projects: [
       {
         extends: true,
@@ -30,9 +25,10 @@ export default defineConfig({
         },
       },
       {
-        // What touches the page needs one: components, composables, stores.
-        extends: true,
+        // What touches the page needs one, and is compiled as the client is.
+        extends: './vite.config.ts',
         test: {
+          ...common,
           name: 'unit-dom',
           include: ['src/**/*.test.ts'],
           environment: 'jsdom',

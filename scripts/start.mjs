@@ -1,4 +1,3 @@
-import { parseArgs } from 'node:util';
 import { join } from 'node:path';
 import { setTimeout as sleep } from 'node:timers/promises';
 import { ensureClientBuilt } from './lib/build.mjs';
@@ -8,6 +7,7 @@ import { registerUse } from './lib/clusterUses.mjs';
 import { ensureDatabase } from './lib/databases.mjs';
 import { requireRealServices, usualPorts } from './lib/environment.mjs';
 import { Failure, failWith } from './lib/failure.mjs';
+import { readFlags } from './lib/flags.mjs';
 import { tryLock } from './lib/lock.mjs';
 import { prepareCheckout } from './lib/prepare.mjs';
 import { endProcess, identify } from './lib/processes.mjs';
@@ -17,15 +17,7 @@ import { migrate, seedDemo } from './lib/serverCommands.mjs';
 import { keepAlive, planStack, startStack } from './lib/stack.mjs';
 import { summary } from './lib/summary.mjs';
 
-const { values: flags } = parseArgs({
-  options: {
-    dev: { type: 'boolean', default: false },
-    at: { type: 'string' },
-    host: { type: 'string' },
-    'no-fakes': { type: 'boolean', default: false },
-  },
-});
-
+const flags = readFlags();
 const run = { parent: identify(), root, children: [], ready: false, logDir };
 let stack;
 let ending = false;
@@ -77,7 +69,7 @@ function endOnSignal() {
 }
 
 async function options() {
-  const fakes = !flags['no-fakes'];
+  const { fakes } = flags;
   if (!fakes) requireRealServices(process.env);
   const { databaseUrl } = await ensureDatabase();
   const host = flags.host ?? process.env.HOST ?? '127.0.0.1';
@@ -95,7 +87,7 @@ async function options() {
 
 /** The demo is made under the fakes' clock and its messages stay in the fakes: without them there is none. */
 async function beforeServers({ env }) {
-  if (!flags['no-fakes']) run.demo = await step('Preparing the demo', () => seedDemo(env));
+  if (flags.fakes) run.demo = await step('Preparing the demo', () => seedDemo(env));
   if (!flags.dev) await ensureClientBuilt();
   say('  … Starting server and worker');
 }
