@@ -5,8 +5,8 @@
 const nonce = document.querySelector<HTMLMetaElement>('meta[property="csp-nonce"]')?.nonce ?? '';
 const create = document.createElement.bind(document);
 
-document.createElement = ((tag: string, options?: ElementCreationOptions) => {
+document.createElement = (tag: string, options?: ElementCreationOptions) => {
   const element = create(tag, options);
   if (tag === 'style') element.nonce = nonce;
   return element;
-}) as typeof document.createElement;
+};

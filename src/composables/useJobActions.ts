@@ -46,7 +46,7 @@ export interface JobActionsOptions {
 /** The moves of one screen. */
 export function useJobActions(options: JobActionsOptions) {
   const cache = useQueryCache();
-  const keyOf = useIntentKey();
+  const intent = useIntentKey();
   const asked = shallowRef<{ job: MovableJob; choice: Choice } | null>(null);
   const made = shallowRef<Made | null>(null);
   const isBusy = ref(false);
@@ -75,9 +75,15 @@ export function useJobActions(options: JobActionsOptions) {
   }
 
   async function send(job: MovableJob, body: MoveDraft): Promise<void> {
-    const full: MoveBody = { outcome: null, partsReason: null, note: '', ...body, lines: linesOf(body) } as MoveBody;
+    const full: MoveBody = {
+      outcome: null,
+      partsReason: null,
+      note: '',
+      ...body,
+      lines: linesOf(body),
+    } as MoveBody;
     await attempt(job, async () => {
-      const answer = await moveJob(job.tag, full, keyOf(['move', job.id, full]));
+      const answer = await moveJob(job.tag, full, intent.keyFor(['move', job.id, full]));
       const words = `Moved to ${options.words.stage(answer.job.stage)}.`;
       made.value = { job: answer.job, said: words, held: answer.held, undo: answer.job.undo };
       say(`${formatCode(answer.job.tag)}: ${words}`);
@@ -89,7 +95,7 @@ export function useJobActions(options: JobActionsOptions) {
   async function undo(job: MovableJob | { id: string; tag: string }, eventId: string): Promise<void> {
     clear();
     await attempt(job, async () => {
-      const answer = await undoMove(job.tag, { eventId }, keyOf(['undo', eventId]));
+      const answer = await undoMove(job.tag, { eventId }, intent.keyFor(['undo', eventId]));
       const stage = options.words.stage(answer.job.stage);
       made.value = { job: answer.job, said: `Taken back. It is in ${stage} again.`, held: [], undo: null };
       say(`${formatCode(answer.job.tag)}: taken back, in ${stage} again.`);
@@ -104,6 +110,7 @@ export function useJobActions(options: JobActionsOptions) {
     fields.value = [];
     try {
       await act();
+      intent.done();
       asked.value = null;
       await reload();
     } catch (error) {
@@ -158,7 +165,23 @@ export function useJobActions(options: JobActionsOptions) {
   /** Trouble that no open form shows. */
   const openTrouble = computed(() => (asked.value ? '' : trouble.value));
 
-  return { asked, made, isBusy, trouble, openTrouble, fields, meanwhile, said, begin, submit, undo, cancel, dismiss, say, reload };
+  return {
+    asked,
+    made,
+    isBusy,
+    trouble,
+    openTrouble,
+    fields,
+    meanwhile,
+    said,
+    begin,
+    submit,
+    undo,
+    cancel,
+    dismiss,
+    say,
+    reload,
+  };
 }
 
 export type JobActions = ReturnType<typeof useJobActions>;

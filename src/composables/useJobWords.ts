@@ -5,8 +5,8 @@ import type { MachineView } from '#shared/schemas/job';
 /** The words for stages, outcomes and machines, from the catalogues that customers read too. */
 export function useJobWords() {
   const { t } = useI18n();
-  const stage = (key: Stage): string => t(`stage.${key}`);
-  const outcome = (key: Outcome): string => t(`outcome.${key}`);
+  const stage = (key: Stage): string => t(`stages.${key}.word`);
+  const outcome = (key: Outcome): string => t(`outcomes.${key}.word`);
   const kind = (machine: MachineView): string =>
     [machine.maker, machine.model].filter(Boolean).join(' ') || t(`machine.kind.${machine.kind}`);
   /** Fleet number as painted on the machine: "No. 14"; the serial where it has none; else nothing. */

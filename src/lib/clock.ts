@@ -22,5 +22,5 @@ export function useNow(everyMs = 1000): Readonly<Ref<Date>> {
   const value = shallowRef(now());
   const timer = setInterval(() => (value.value = now()), everyMs);
   onScopeDispose(() => clearInterval(timer));
-  return readonly(value) as Readonly<Ref<Date>>;
+  return readonly(value);
 }
