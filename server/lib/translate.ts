@@ -3,7 +3,6 @@
  * same files and by the same message format as the screens.
  */
 import { readdirSync, readFileSync } from 'node:fs';
-import { basename } from 'node:path';
 import { createI18n } from 'vue-i18n';
 import { LANGUAGES, type Language } from '#shared/domain/when';
 
@@ -12,16 +11,12 @@ interface Words {
 }
 export type Params = Record<string, string | number>;
 
-/** A language's areas, each under the name of its file: `errors.json` holds what is said as `errors.…`. */
+/** A language's areas: each file begins with the keys of its own. */
 function readCatalogue(language: Language): Words {
   const folder = new URL(`../../shared/locales/${language}/`, import.meta.url);
   const files = readdirSync(folder).filter((name) => name.endsWith('.json'));
-  return Object.fromEntries(
-    files.map((name) => [
-      basename(name, '.json'),
-      JSON.parse(readFileSync(new URL(name, folder), 'utf8')) as Words,
-    ]),
-  );
+  const areas = files.map((name) => JSON.parse(readFileSync(new URL(name, folder), 'utf8')) as Words);
+  return Object.assign({}, ...areas) as Words;
 }
 
 const i18n = createI18n({
@@ -31,11 +26,11 @@ const i18n = createI18n({
   fallbackWarn: false,
   messages: Object.fromEntries(LANGUAGES.map((language) => [language, readCatalogue(language)])),
 });
-const { t, te } = i18n.global;
+const { global } = i18n;
 
 /** Whether the catalogues of that language have the key. */
 export function hasWords(language: Language, key: string): boolean {
-  return te(key, language);
+  return global.te(key, language);
 }
 
 /**
@@ -47,6 +42,6 @@ export function translate(language: Language, key: string, params: Params = {}):
   if (!hasWords(language, key)) throw new Error(`no words for ${key} in ${language}`);
   const options = { locale: language };
   return typeof params.n === 'number'
-    ? t(key, params, { ...options, plural: params.n })
-    : t(key, params, options);
+    ? global.t(key, params, { ...options, plural: params.n })
+    : global.t(key, params, options);
 }
