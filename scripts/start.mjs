@@ -79,6 +79,8 @@ async function options() {
     at: flags.at,
     stateDir: join(stateDir, 'fakes'),
     watch: flags.dev,
+    // Asked, not killed: a worker hands its texts over before it goes.
+    endWith: 'TERM',
     extraWeb: flags.dev ? { VITE_DEV: '1' } : {},
     onLine: (name, line) => say(`[${name}] ${line}`),
     onStart: noteChild,

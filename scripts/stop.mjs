@@ -9,8 +9,8 @@ async function main() {
   const run = readRun();
   const ended = run ? await endRun(run) : { parent: false, left: 0 };
   // Also what a killed start left: a cluster that nobody uses any more.
-  await releaseCluster();
-  say(ended.parent || ended.left ? 'Benchbell has ended.' : 'Benchbell was not running.');
+  const stopped = await releaseCluster();
+  say(ended.parent || ended.left || stopped ? 'Benchbell has ended.' : 'Benchbell was not running.');
 }
 
 main().catch(failWith);

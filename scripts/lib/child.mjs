@@ -32,7 +32,7 @@ export function screenLine(line, isErrorStream) {
  * `ready` picks from an output line what the process says once it serves; `onLine` sees what belongs on screen.
  */
 export class Child {
-  /** @param {{name: string, file: string, env: object, logDir: string, watch?: boolean, ready: Function, onLine?: Function, onStart?: Function}} options */
+  /** @param {{name: string, file: string, env: object, logDir: string, watch?: boolean, ready: Function, onLine?: Function, onStart?: Function, endWith?: string}} options */
   constructor(options) {
     this.options = options;
     this.name = options.name;
@@ -44,7 +44,9 @@ export class Child {
   start() {
     const { file, env, watch } = this.options;
     this.ending = false;
-    const child = spawn(process.execPath, tsxArguments(file, { watch }), {
+    // The kernel ends the process when we are killed: nothing is left running that nobody looks after.
+    const bond = ['--pdeathsig', this.options.endWith ?? 'KILL', '--', process.execPath];
+    const child = spawn('setpriv', [...bond, ...tsxArguments(file, { watch })], {
       cwd: root,
       env,
       detached: true,
@@ -83,7 +85,7 @@ export class Child {
   }
 
   #failure(what) {
-    return new Failure(`The ${this.name} ${what}. The end of ${this.logFile}:\n${tail(this.logFile)}`);
+    return new Failure(`The ${this.name} ${what}. The end of ${this.logFile}:\n${tail(this.logFile, 30)}`);
   }
 
   /** Sends a signal to the process and waits until it has ended. */

@@ -157,12 +157,12 @@ export function withClusterLock(work) {
   return withLock(`${lockFile}.databases`, work);
 }
 
-/** Notes that this process needs the cluster no longer, and stops it when nobody else does. */
+/** Notes that this process needs the cluster no longer, and stops it when nobody else does: true when it did. */
 export async function releaseCluster() {
-  if (!existsSync(clusterHome)) return;
-  await withLock(lockFile, async () => {
+  if (!existsSync(clusterHome)) return false;
+  return withLock(lockFile, async () => {
     removeUse();
-    if (usesLeft() > 0 || !runningServer()) return;
+    if (usesLeft() > 0 || !runningServer()) return false;
     const programs = await ensurePrograms();
     const stopped = await runProgram(programs, 'pg_ctl', [
       '-D',
@@ -176,5 +176,6 @@ export async function releaseCluster() {
       'stop',
     ]);
     if (stopped.code !== 0) say(`PostgreSQL did not stop: ${stopped.stderr.trim()}`);
+    return stopped.code === 0;
   });
 }

@@ -99,7 +99,7 @@ export const appRole: string;
 export const ownerRole: string;
 export function prepareCheckout(): Promise<void>;
 export function ensureClientBuilt(): Promise<void>;
-export function releaseCluster(): Promise<void>;
+export function releaseCluster(): Promise<boolean>;
 export function testPorts(): Promise<StackPorts>;
 export function migrate(env: Environment): Promise<string>;
 export function seedDemo(env: Environment): Promise<{

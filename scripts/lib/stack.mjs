@@ -28,8 +28,7 @@ async function launch(options) {
 
 /** Starts a web server; ready when it listens. `env.PORT` decides where. */
 export function spawnWeb(options) {
-  const ready = (line) =>
-    /listening (https?:\/\/\S+?)["\s]?$/.exec(line)?.[1] ?? /listening (https?:\/\/[^\s"]+)/.exec(line)?.[1];
+  const ready = (line) => /listening (https?:\/\/[\w.:[\]-]+)/.exec(line)?.[1];
   return launch({ name: 'web', file: 'server/web.ts', ready, ...options });
 }
 
@@ -93,7 +92,7 @@ export async function startStack(options) {
     if (!children.includes(child)) children.push(child);
     onStart?.(child);
   };
-  const common = { logDir, watch, onLine, onStart: note };
+  const common = { logDir, watch, onLine, onStart: note, endWith: options.endWith };
   const stop = () => stopAll(children);
   try {
     const started = { fakes: undefined, webs: [], workers: [] };
