@@ -27,9 +27,7 @@ export interface KeyedRequest {
  * @throws AppError key_reused when the key was used for another act, person or body
  */
 export async function once<T>(ctx: Ctx, request: KeyedRequest, act: () => Promise<T>): Promise<T> {
-  const hash = createHash('sha256')
-    .update(JSON.stringify([request.act, ctx.actor?.personId ?? null, request.body]))
-    .digest('hex');
+  const hash = hashOf(ctx, request);
   const taken = await run<{ id: string }>(
     `insert into idempotency_keys (shop_id, id, key, body_hash, created_at) values ($1, $2, $3, $4, $5)
      on conflict (shop_id, key) do nothing returning id`,
@@ -42,6 +40,17 @@ export async function once<T>(ctx: Ctx, request: KeyedRequest, act: () => Promis
     JSON.stringify(answer),
   ]);
   return answer;
+}
+
+/** What an earlier request with this key was answered, or null when there was none. Inside a unit of work. */
+export async function answered<T>(ctx: Ctx, request: KeyedRequest): Promise<T | null> {
+  const found = await rows('select 1 from idempotency_keys where key = $1', [request.key]);
+  return found.length > 0 ? replay<T>(request.key, hashOf(ctx, request)) : null;
+}
+
+function hashOf(ctx: Ctx, { act, body }: KeyedRequest): string {
+  const meaning = JSON.stringify([act, ctx.actor?.personId ?? null, body]);
+  return createHash('sha256').update(meaning).digest('hex');
 }
 
 async function replay<T>(key: string, hash: string): Promise<T> {

@@ -1,0 +1,120 @@
+import { Op } from 'sequelize';
+import type { Ctx } from '#server/lib/context';
+import { unitShopOf } from '#server/lib/shops';
+import { toldOf } from '#server/messages/told';
+import { presentNotices } from '#server/messages/presentNotices';
+import { textsOfVisit } from '#server/messages/presentTexts';
+import {
+  Account,
+  Job,
+  JobNote,
+  Person,
+  SignedLine,
+  Visit,
+  VisitEvent,
+  type JobEvent,
+} from '#server/models/index';
+import { correctStages } from '#server/queries/correctStages';
+import { readEvents } from '#server/queries/jobEvents';
+import { railJob } from '#server/queries/railJobs';
+import type { Standing } from '#shared/domain/standing';
+import { abilitiesOf } from '#shared/policies/abilities';
+import type { HistoryItem, JobSheet, SignedLineView } from '#shared/schemas/job';
+import { presentPeople } from './people';
+import { presentRailJob } from './railJob';
+
+/** Everything the shop knows of one job. Inside a unit of work. */
+export async function presentJobSheet(ctx: Ctx, jobId: string): Promise<JobSheet> {
+  const job = await Job.findByPk(jobId, { rejectOnEmpty: true });
+  const visit = await Visit.findByPk(job.visitId, { rejectOnEmpty: true });
+  const shop = await unitShopOf(ctx.shopId);
+  const history = await readEvents(jobId);
+  return {
+    now: ctx.now.toISOString(),
+    zone: shop.zone,
+    unpaidLimitCents: shop.settings.unpaidLimitCents,
+    job: await presentJob(ctx, job, visit),
+    people: await presentPeople(await peopleOf(visit, job)),
+    history: history.events.map((event) => presentEvent(event, history, ctx.now)),
+    notes: (await JobNote.findAll({ where: { jobId }, order: [['at', 'DESC']] })).map(presentNote),
+    lines: (await SignedLine.findAll({ where: { jobId }, order: [['at', 'ASC']] })).map((line) =>
+      presentLine(line, history),
+    ),
+    notices: await presentNotices(ctx, jobId, visit.id),
+    texts: await textsOfVisit(visit.id),
+    told: await toldOf(await eventsToTellAgain(history)),
+    correctTo: correctStages(ctx, job, history.standing, shop.zone),
+    abilities: ctx.actor ? abilitiesOf(ctx.actor) : [],
+  };
+}
+
+async function presentJob(ctx: Ctx, job: Job, visit: Visit): Promise<JobSheet['job']> {
+  const row = await railJob(job.id);
+  const billed = await Account.findByPk(job.billedAccountId, { rejectOnEmpty: true });
+  if (!row) throw new Error(`job ${job.id} has no current tag`);
+  return {
+    ...presentRailJob(row, ctx.actor, ctx.now),
+    visit: { id: visit.id, stubCode: visit.stubCode, note: visit.note },
+    billed: { id: billed.id, name: billed.name },
+    broughtBy: job.broughtByName || null,
+    leftWithIt: job.leftWithIt,
+    outcomeNote: job.outcomeNote,
+  };
+}
+
+/** Whom the shop may want to call: who booked, who brought it, and the managers of whoever is billed. */
+function peopleOf(visit: Visit, job: Job): Promise<Person[]> {
+  const ids = [visit.bookedByPersonId, job.broughtByPersonId].filter((id) => id !== null);
+  return Person.findAll({
+    where: {
+      [Op.or]: [
+        { id: ids },
+        { accountId: job.billedAccountId, leftAt: null, roles: { [Op.contains]: ['manager'] } },
+      ],
+    },
+    order: ['name'],
+  });
+}
+
+/** The present stage's events: a correction would have to tell again whoever was told of them. */
+async function eventsToTellAgain({ standing }: Standing<JobEvent>): Promise<string[]> {
+  const ids = standing.filter((event) => event.kind !== 'booked').map(({ id }) => id);
+  const ofVisit = await VisitEvent.findAll({ where: { jobEventId: ids } });
+  return [...ids, ...ofVisit.map(({ id }) => id)];
+}
+
+function presentEvent(event: JobEvent, { undone, corrected }: Standing<JobEvent>, now: Date): HistoryItem {
+  return {
+    id: event.id,
+    at: event.at.toISOString(),
+    kind: event.kind,
+    from: event.fromStage,
+    to: event.toStage,
+    outcome: event.outcome,
+    by: event.byName,
+    reason: event.reason,
+    visibleAt: event.visibleAt > now ? event.visibleAt.toISOString() : null,
+    undone: undone.has(event.id) || corrected.has(event.id),
+  };
+}
+
+function presentNote({ id, at, byName, body }: JobNote) {
+  return { id, at: at.toISOString(), by: byName, body };
+}
+
+function presentLine(line: SignedLine, { undone, corrected }: Standing<JobEvent>): SignedLineView {
+  const { id, guard, mode, how, leftOut, why, amountCents } = line;
+  const voided = undone.has(line.eventId) || corrected.has(line.eventId);
+  return {
+    id,
+    at: line.at.toISOString(),
+    by: line.byName,
+    guard,
+    mode,
+    how,
+    leftOut,
+    why,
+    amountCents,
+    voided,
+  };
+}
