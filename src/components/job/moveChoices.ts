@@ -86,10 +86,9 @@ function whyBarred(from: Stage, to: Stage, roles: readonly Role[], words: Words)
 
 function noWay(problem: Extract<MoveProblem, { code: 'no_such_move' }>, words: Words): string {
   const { from, to, allowed } = problem;
-  if (isBack(from, to))
-    return `That lies behind. If ${words(from)} was a mistake, correct it on the job sheet.`;
-  if (allowed.length === 0)
-    return `${words(from)} is an end. If it was a mistake, correct it on the job sheet.`;
+  const correct = `if ${words(from)} was a mistake, correct it on the job sheet.`;
+  if (isBack(from, to)) return `That lies behind: ${correct}`;
+  if (allowed.length === 0) return `${words(from)} is an end: ${correct}`;
   return `From ${words(from)} a machine goes to ${anyOf(allowed.map(words))} first.`;
 }
 
