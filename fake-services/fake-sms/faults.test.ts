@@ -111,11 +111,13 @@ describe('when a fault strikes', () => {
   async function outcomes(seed: number): Promise<string> {
     await start({ seed, faults: [{ kind: '500', share: 0.3 }] });
     let run = '';
-    for (let index = 0; index < 40; index += 1)
-      run += (await send().then(
-        () => '.',
-        () => 'x',
-      )) as string;
+    for (let index = 0; index < 40; index += 1) {
+      const failed = await send().then(
+        () => false,
+        () => true,
+      );
+      run += failed ? 'x' : '.';
+    }
     await fake.stop();
     return run;
   }

@@ -114,11 +114,11 @@ function renderSenders(phone: string, senders: string[], chosen: string | undefi
 
 function renderThread(gateway: Gateway, phone: string, sender: string, zone: string): string {
   const live = `/live/phones/${phone}?with=${encodeURIComponent(sender)}`;
-  return `<ol class="thread" role="log" aria-label="Texts" data-live="${escapeHtml(live)}" data-follow="foot">${renderBubbles(
+  return `<div role="log" aria-label="Texts"><ol class="thread" data-live="${escapeHtml(live)}" data-follow="foot">${renderBubbles(
     thread(gateway, phone, sender),
     phone,
     zone,
-  )}</ol>
+  )}</ol></div>
 <form class="answer" method="post" action="/phones/${phone}" data-send="stay">
 <input type="hidden" name="to" value="${escapeHtml(sender)}">
 <div class="row"><div><label for="body">Answer as ${escapeHtml(phone)}</label>

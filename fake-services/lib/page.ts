@@ -44,8 +44,10 @@ export function renderPage({ title, banner, home, body }: Page): string {
 </head>
 <body>
 <a class="skip" href="#main">Skip to content</a>
+<header>
 <p class="banner"><strong>${escapeHtml(banner)}</strong></p>
-<header class="top"><a href="/">${escapeHtml(home)}</a></header>
+<div class="top"><a href="/">${escapeHtml(home)}</a></div>
+</header>
 <main id="main">${body}</main>
 </body>
 </html>`;
