@@ -35,12 +35,38 @@ export async function lockVisitMessages(visitId: string): Promise<void> {
 
 /** Adds one notice to one person, unless that person has it already. */
 export async function addNotice(ctx: Ctx, news: News, person: Person, channel: Channel): Promise<void> {
-  const { kind, visitId, visitEventId, jobEventId, jobId, eventId, at, releaseAt } = news;
-  await lockVisitMessages(visitId);
-  if (await Notice.findOne({ where: { eventId, personId: person.id, channel } })) return;
+  await addNotices(ctx, [news], person, channel);
+}
+
+/** Adds notices about one visit to one person on one message. Those that the person has already are passed over. */
+export async function addNotices(
+  ctx: Ctx,
+  all: readonly News[],
+  person: Person,
+  channel: Channel,
+): Promise<void> {
+  const [first] = all;
+  if (!first) return;
+  await lockVisitMessages(first.visitId);
+  const eventIds = all.map(({ eventId }) => eventId);
+  const known = await Notice.findAll({ where: { eventId: eventIds, personId: person.id, channel } });
+  const fresh = all.filter(({ eventId }) => !known.some((notice) => notice.eventId === eventId));
+  if (fresh.length === 0) return;
   const message =
-    (await findOpenMessage(ctx, news, person, channel)) ?? (await newMessage(ctx, news, person, channel));
-  await Notice.create({
+    (await findOpenMessage(ctx, first, person, channel)) ?? (await newMessage(ctx, first, person, channel));
+  for (const news of fresh) await createNotice(ctx, news, message, person, channel);
+  await setRelease(ctx, message, person);
+}
+
+function createNotice(
+  ctx: Ctx,
+  news: News,
+  message: Message,
+  person: Person,
+  channel: Channel,
+): Promise<Notice> {
+  const { kind, visitId, visitEventId, jobEventId, jobId, eventId, at, releaseAt } = news;
+  return Notice.create({
     shopId: ctx.shopId,
     id: newId(),
     ...{ kind, visitId, visitEventId, jobEventId, jobId, eventId, releaseAt },
@@ -49,7 +75,6 @@ export async function addNotice(ctx: Ctx, news: News, person: Person, channel: C
     messageId: message.id,
     createdAt: at,
   });
-  await setRelease(ctx, message, person);
 }
 
 /** The message that still waits for changes like this one. One whose time has come is no longer added to. */
