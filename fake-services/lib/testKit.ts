@@ -16,13 +16,13 @@ export class RebasedClient extends twilio.RequestClient {
     this.#base = new URL(base);
   }
 
-  override request<Body>(
-    options: Parameters<twilio.RequestClient['request']>[0],
-  ): ReturnType<typeof twilio.RequestClient.prototype.request<Body>> {
+  override request<Data>(
+    options: Parameters<typeof twilio.RequestClient.prototype.request<Data>>[0],
+  ): ReturnType<typeof twilio.RequestClient.prototype.request<Data>> {
     const address = new URL(options.uri);
     address.protocol = this.#base.protocol;
     address.host = this.#base.host;
-    return super.request<Body>({ ...options, uri: address.href });
+    return super.request<Data>({ ...options, uri: address.href });
   }
 }
 
