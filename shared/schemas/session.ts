@@ -23,6 +23,14 @@ export interface AskCodeAnswer {
   expiresAt: string;
 }
 
+/** Details of the error `opted_out`: how to undo the STOP, and how to do without texts. */
+export interface OptedOutDetails {
+  /** E.164. */
+  shopPhone: string;
+  /** The number to text START to, E.164; null while the shop has none. */
+  shopNumberToText: string | null;
+}
+
 export const sixDigits = z
   .string()
   .transform((typed) => typed.replace(/\s/g, ''))
