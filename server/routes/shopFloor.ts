@@ -4,10 +4,10 @@ import { addNote } from '#server/commands/addNote';
 import { correctJob } from '#server/commands/correctJob';
 import { jobIdByTag } from '#server/commands/loadJob';
 import { moveJob } from '#server/commands/moveJob';
-import { stopTexts } from '#server/commands/stopTexts';
 import { undoMove } from '#server/commands/undoMove';
 import { AppError } from '#server/errors';
 import { withShop } from '#server/lib/db';
+import { stopTexts } from '#server/messages/optOut';
 import { Person } from '#server/models/index';
 import { presentGate } from '#server/presenters/gate';
 import { presentJobSheet } from '#server/presenters/jobSheet';
@@ -77,7 +77,7 @@ export const shopFloorRoutes: Route[] = [
     path: '/api/shop/people/:id/stop-texts',
     access: needs('person.stop_texts'),
     load: loadPerson,
-    handle: ({ ctx, row }) => stopTexts(ctx, row),
+    handle: ({ ctx, row }) => withShop(ctx.shopId, () => stopTexts(ctx, row)),
   }),
 ];
 
