@@ -1,12 +1,24 @@
 import type { Services } from '#server/lib/context';
+import { bookingRoutes } from './booking';
 import { codeRoutes } from './codes';
 import { passwordLinkRoutes } from './passwordLinks';
 import { reportRoutes } from './reports';
 import type { Route } from './route';
 import { sessionRoutes } from './session';
+import { shopFloorRoutes } from './shopFloor';
 import { shopRoutes } from './shops';
+import { stubRoutes } from './stub';
 
 /** Every route of the server. Nothing else is mounted. */
 export function routeTable(services: Services): Route[] {
-  return [...sessionRoutes(services), ...codeRoutes, ...passwordLinkRoutes, ...shopRoutes, ...reportRoutes];
+  return [
+    ...sessionRoutes(services),
+    ...codeRoutes,
+    ...passwordLinkRoutes,
+    ...shopRoutes,
+    ...bookingRoutes,
+    ...stubRoutes,
+    ...shopFloorRoutes,
+    ...reportRoutes,
+  ];
 }
