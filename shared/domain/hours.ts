@@ -62,5 +62,8 @@ export function afterQuietHours(at: Date, zone: string, quiet: { from: string; t
   const isQuiet = isOvernight ? time >= quiet.from || time < quiet.to : time >= quiet.from && time < quiet.to;
   if (quiet.from === quiet.to || !isQuiet) return at;
   const endDay = isOvernight && time >= quiet.from ? local.plus({ days: 1 }) : local;
-  return instantOf(endDay.toISODate() ?? '', quiet.to, zone).toJSDate();
+  const end = instantOf(endDay.toISODate() ?? '', quiet.to, zone);
+  // Where the clock goes back, that time comes twice: the first may be over already.
+  const ends = end.getPossibleOffsets().filter((candidate) => candidate.toMillis() >= at.getTime());
+  return (ends[0] ?? end).toJSDate();
 }

@@ -191,6 +191,6 @@ export function hasEnded(stage: Stage): boolean {
 /** The stages that a correction may put a job back to: any earlier one; from a booking's end, booked. */
 export function earlierStages(stage: Stage): Stage[] {
   if (stage === 'cancelled' || stage === 'no_show') return ['booked'];
-  if (stage === 'disposed') return PROGRESS.slice(1, 8);
+  if (stage === 'disposed') return earlierStages('collected');
   return PROGRESS.slice(0, PROGRESS.indexOf(stage));
 }

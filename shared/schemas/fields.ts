@@ -7,10 +7,13 @@ import { LANGUAGES } from '#shared/domain/when';
 export const uuid = z.uuid('errors.field.uuid');
 export const language = z.enum(LANGUAGES);
 
-/** Control characters have no place in one line of text, and line breaks could end up in a mail header. */
-const oneLine = /^[^\p{Cc}]*$/u;
+/**
+ * Control characters have no place in one line of text, and line breaks could end up in a mail header. Half of a
+ * surrogate pair is no character at all, and the database's JSON refuses it.
+ */
+const oneLine = /^[^\p{Cc}\p{Cs}]*$/u;
 /** Text areas keep line breaks and tabs; the database takes no zero byte. */
-const manyLines = /^[^\p{Cc}]*(?:[\n\r\t][^\p{Cc}]*)*$/u;
+const manyLines = /^[^\p{Cc}\p{Cs}]*(?:[\n\r\t][^\p{Cc}\p{Cs}]*)*$/u;
 
 /** A required line of text, trimmed, of at most `max` characters. */
 export function line(max: number) {

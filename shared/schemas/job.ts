@@ -1,6 +1,6 @@
 /** Gate, Rail and job sheet: what staff read and what they do. */
 import { z } from 'zod';
-import { cents, code, optionalText, text, uuid } from './fields';
+import { cents, code, optionalLine, optionalText, text, uuid } from './fields';
 import {
   GUARD_KEYS,
   OUTCOMES,
@@ -32,7 +32,7 @@ export const CheckInInput = z
     newTag: code.optional(),
     /** Who brought it: a person of the account, or a name. */
     broughtByPersonId: uuid.optional(),
-    broughtByName: z.string().trim().max(60, 'errors.field.too_long').default(''),
+    broughtByName: optionalLine(60),
     tankBled: z.boolean(),
     fuelOff: z.boolean(),
     leftWithIt: optionalText(200),
