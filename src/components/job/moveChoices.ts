@@ -28,8 +28,9 @@ export interface Choice {
   asks: boolean;
 }
 
+/** Rails that are shut for one and the same reason. */
 export interface Barred {
-  to: Stage;
+  stages: Stage[];
   why: string;
 }
 
@@ -70,11 +71,16 @@ function asksAnything(move: Move): boolean {
   return move.guards.length > 0 || move.asksPartsReason === true || move.to === 'checked_in';
 }
 
-/** Every other rail, each with why the tag may not go there and what would allow it. */
+/** Every other rail, with why the tag may not go there and what would allow it; one line for one reason. */
 export function barredFrom(from: Stage, roles: readonly Role[], words: Words): Barred[] {
   const open = choicesFrom(from, roles).filter((choice) => choice.kind === 'move');
   const shut = STAGES.filter((to) => to !== from && !open.some((choice) => choice.to === to));
-  return shut.map((to) => ({ to, why: whyBarred(from, to, roles, words) }));
+  const byReason = new Map<string, Stage[]>();
+  for (const to of shut) {
+    const why = whyBarred(from, to, roles, words);
+    byReason.set(why, [...(byReason.get(why) ?? []), to]);
+  }
+  return [...byReason].map(([why, stages]) => ({ stages, why }));
 }
 
 function whyBarred(from: Stage, to: Stage, roles: readonly Role[], words: Words): string {
