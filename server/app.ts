@@ -1,5 +1,6 @@
 import express, { type Express } from 'express';
 import type { Services } from '#server/lib/context';
+import { auditRefusals } from '#server/middlewares/auditRefusals';
 import { answerErrors, unknownAddress } from '#server/middlewares/errors';
 import { requestId, securityHeaders } from '#server/middlewares/headers';
 import { refuseCrossSite } from '#server/middlewares/crossSite';
@@ -28,6 +29,6 @@ export async function createApp(services: Services): Promise<Express> {
   mountRoutes(app, services, routeTable(services));
   app.use(['/api', '/hooks'], unknownAddress);
   app.use(await pages(services));
-  app.use(answerErrors(services));
+  app.use(auditRefusals(services), answerErrors(services));
   return app;
 }
