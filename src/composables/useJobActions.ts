@@ -39,8 +39,8 @@ export interface Made {
 export interface JobActionsOptions {
   words: JobWords;
   zone: () => string;
-  /** After every answer, whatever it was: the screen shows the job where it is now. */
-  settled?: (job: MovableJob, answer: 'moved' | 'undone' | 'meanwhile') => void;
+  /** After a move, an undo or somebody else's move, once the screen is read again: shows the job where it is now. */
+  settled?: (job: { id: string }) => void;
 }
 
 /** The moves of one screen. */
@@ -57,7 +57,8 @@ export function useJobActions(options: JobActionsOptions) {
   const meanwhile = ref('');
   const said = ref('');
 
-  const reload = () => cache.invalidateQueries({ key: [...FLOOR_KEY] });
+  /** A read that fails or is overtaken keeps its own error; the act that went before it stands. */
+  const reload = () => cache.invalidateQueries({ key: [...FLOOR_KEY] }).catch(() => undefined);
 
   /** Starts a move: sends it at once where the table asks nothing, else opens its form. */
   async function begin(job: MovableJob, choice: Choice): Promise<void> {
@@ -87,7 +88,7 @@ export function useJobActions(options: JobActionsOptions) {
       const words = `Moved to ${options.words.stage(answer.job.stage)}.`;
       made.value = { job: answer.job, said: words, held: answer.held, undo: answer.job.undo };
       say(`${formatCode(answer.job.tag)}: ${words}`);
-      options.settled?.(answer.job, 'moved');
+      return answer.job;
     });
   }
 
@@ -99,20 +100,21 @@ export function useJobActions(options: JobActionsOptions) {
       const stage = options.words.stage(answer.job.stage);
       made.value = { job: answer.job, said: `Taken back. It is in ${stage} again.`, held: [], undo: null };
       say(`${formatCode(answer.job.tag)}: taken back, in ${stage} again.`);
-      options.settled?.(answer.job, 'undone');
+      return answer.job;
     });
   }
 
-  async function attempt(job: { id: string; tag: string }, act: () => Promise<void>): Promise<void> {
+  async function attempt(job: { id: string; tag: string }, act: () => Promise<MovableJob>): Promise<void> {
     if (isBusy.value) return;
     isBusy.value = true;
     trouble.value = '';
     fields.value = [];
     try {
-      await act();
+      const moved = await act();
       intent.done();
       asked.value = null;
       await reload();
+      options.settled?.(moved);
     } catch (error) {
       await failed(job, error);
     } finally {
@@ -124,14 +126,12 @@ export function useJobActions(options: JobActionsOptions) {
     if (error instanceof ApiError && error.code === 'moved_meanwhile') {
       asked.value = null;
       meanwhile.value = meanwhileWords(job, error.details as MovedMeanwhileDetails);
-      say(meanwhile.value);
       await reload();
-      options.settled?.(job as MovableJob, 'meanwhile');
+      options.settled?.(job);
       return;
     }
     fields.value = error instanceof ApiError ? error.fields : [];
     trouble.value = troubleWords(error, options.words.t(errorKeyOf(error)));
-    say(trouble.value);
     if (error instanceof ApiError && error.code === 'too_late') {
       if (made.value) made.value = { ...made.value, undo: null };
       await reload();

@@ -25,7 +25,8 @@ export function useWrite() {
     try {
       await write(intent.keyFor(content));
       intent.done();
-      await cache.invalidateQueries({ key: [...FLOOR_KEY] });
+      // The write stands, whatever becomes of the read after it; that keeps its own error.
+      await cache.invalidateQueries({ key: [...FLOOR_KEY] }).catch(() => undefined);
       return true;
     } catch (failure) {
       error.value = failure;

@@ -26,7 +26,7 @@ describe('the bar after a move', () => {
     const wrapper = bar('2026-12-01T18:40:10.000Z');
     expect(wrapper.text()).toContain('7K4-QM2');
     expect(wrapper.text()).toContain('Moved to Ready.');
-    expect(wrapper.text()).toContain('Text to Dana Ruiz and E-mail to Ray Ortiz go at 11:41 am.');
+    expect(wrapper.text()).toContain('Text to Dana Ruiz and e-mail to Ray Ortiz go at 11:41 am.');
     await wrapper.get('button').trigger('click');
     expect(wrapper.emitted('undo')).toHaveLength(1);
   });
