@@ -42,6 +42,8 @@ const up = (roles) => `
   );
   create index messages_due on messages (not_before) where status in ('pending', 'sending', 'unknown');
   create index messages_of_person on messages (shop_id, person_id, visit_id, created_at);
+  -- Whether a phone was texted before, and what waits for a phone that says STOP.
+  create index messages_to on messages (shop_id, to_address);
   create unique index messages_provider on messages (shop_id, provider_id) where provider_id is not null;
   ${rowSecurity('messages', roles)}
 

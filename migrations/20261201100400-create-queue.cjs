@@ -8,7 +8,7 @@ const enqueue = ({ appRole }) => `
   create function enqueue(task text, payload json, run_at timestamptz default null) returns void
   language plpgsql security definer set search_path = pg_catalog, pg_temp as $$
   begin
-    if task not in ('send_message', 'read_inbound_text') then
+    if task <> 'send_message' then
       raise exception 'unknown task %', task using errcode = 'invalid_parameter_value';
     end if;
     if payload ->> 'shopId' is distinct from current_setting('app.shop') then

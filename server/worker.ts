@@ -1,0 +1,3 @@
+import { runWorkerProcess } from '#server/tasks/workerProcess';
+
+await runWorkerProcess();
