@@ -32,8 +32,8 @@ async function openShop(form: ShopForm): Promise<string> {
     pool: { max: 1 },
   });
   try {
-    const { name, slug, zone, phone, sender, email, address, 'text-name': textName } = form;
-    return await openNewShop(owner, { name, slug, zone, phone, sender, email, address, textName });
+    const { name, slug, zone, hours, phone, sender, email, address, 'text-name': textName } = form;
+    return await openNewShop(owner, { name, slug, zone, hours, phone, sender, email, address, textName });
   } finally {
     await owner.close();
   }

@@ -7,6 +7,7 @@ import { createLogger } from '#server/lib/logger';
 import { Shop } from '#server/models/index';
 import { Sequelize } from 'sequelize';
 import { seedShop } from '../../seeders/demo';
+import type { DemoShop } from '../../seeders/scenario';
 import { demoShops } from '../../seeders/shops';
 import { formatPhone } from '#shared/domain/phone';
 
@@ -31,8 +32,8 @@ async function seed(): Promise<void> {
   await owner.close();
 }
 
-function signIns() {
-  return demoShops.flatMap((demo) => [
+function signIns(shops: DemoShop[]) {
+  return shops.flatMap((demo) => [
     ...demo.staff.map(({ name, email, roles }) => ({
       role: `${roles.join(', ')} (${name})`,
       where: `/s/${demo.slug}/sign-in`,

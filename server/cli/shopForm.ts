@@ -6,13 +6,16 @@ import { z } from 'zod';
 import { translate } from '#server/lib/translate';
 import { email, line, phone } from '#shared/schemas/fields';
 import { describeIssue } from '#shared/schemas/issues';
+import { parseHours } from './hoursForm';
 
 const TEXT_NAME_MAX = 20;
+const USUAL_HOURS_TYPED = 'mon-fri 07:00-17:00';
 
 /** Said of the fields that only this form has; the others have their sentences in the catalogues. */
 const SENTENCES: Partial<Record<string, string>> = {
   slug: 'Two to forty small letters, digits and single hyphens: it becomes part of addresses.',
   zone: 'A time zone by its full name, such as America/Denver.',
+  hours: 'Days and times, such as "mon-fri 07:00-17:00, sat 08:00-12:00".',
 };
 const slug = z
   .string()
@@ -23,10 +26,18 @@ const zone = z
   .trim()
   .refine((name) => IANAZone.isValidZone(name));
 
+const hours = z.string().transform((typed, ctx) => {
+  const read = parseHours(typed);
+  if (read) return read;
+  ctx.addIssue({ code: 'custom' });
+  return z.NEVER;
+});
+
 const shape = {
   name: line(80),
   slug,
   zone,
+  hours,
   'owner-name': line(60),
   'owner-email': email,
   phone,
@@ -42,6 +53,7 @@ const QUESTIONS: Record<Field, string> = {
   name: 'Name of the shop',
   slug: 'Its name in addresses (/s/…)',
   zone: 'Time zone',
+  hours: 'Opening hours',
   'owner-name': "Owner's name",
   'owner-email': "Owner's e-mail, to sign in with",
   phone: "Shop's phone, that customers call",
@@ -53,9 +65,9 @@ const QUESTIONS: Record<Field, string> = {
 const FIELDS = Object.keys(shape) as Field[];
 type Given = Partial<Record<Field, string>>;
 
-export const USAGE = `usage: npm run shop:create -- --name NAME --slug SLUG --zone ZONE --owner-name NAME --owner-email ADDRESS
+export const USAGE = `usage: npm run shop:create -- --name NAME --slug SLUG --zone ZONE [--hours HOURS] --owner-name NAME --owner-email ADDRESS
          --phone NUMBER --sender NUMBER --address ADDRESS [--text-name NAME] [--email ADDRESS]
-On a terminal, what is left out is asked for.`;
+HOURS are such as "${USUAL_HOURS_TYPED}", which is taken when nothing is said. On a terminal, what is left out is asked for.`;
 
 /**
  * Reads the command line.
@@ -70,6 +82,7 @@ export function givenOnCommandLine(args: string[]): Given {
 export function usualValue(field: Field, given: Given): string | undefined {
   const name = given.name?.trim() ?? '';
   if (field === 'text-name' && name.length <= TEXT_NAME_MAX) return name || undefined;
+  if (field === 'hours') return USUAL_HOURS_TYPED;
   if (field === 'email') return given['owner-email'];
   return undefined;
 }

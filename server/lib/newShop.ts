@@ -60,6 +60,13 @@ export async function openNewShop(owner: Sequelize, shop: NewShop): Promise<stri
   return id;
 }
 
+/** The usual times that fall into the shop's hours; where none does, each opening. */
+function arrivalTimesOf(hours: WeekHours): string[] {
+  const spans = Object.values(hours).flat();
+  const within = ARRIVAL_TIMES.filter((time) => spans.some(({ from, to }) => from <= time && time < to));
+  return within.length > 0 ? within : [...new Set(spans.map(({ from }) => from))].sort();
+}
+
 async function fillShop(shopId: string, shop: NewShop): Promise<void> {
   await ShopSettings.create({
     shopId,
@@ -73,7 +80,7 @@ async function fillShop(shopId: string, shop: NewShop): Promise<void> {
     aboutEn: shop.about?.en ?? '',
     aboutEs: shop.about?.es ?? '',
     hours: shop.hours ?? USUAL_HOURS,
-    arrivalTimes: ARRIVAL_TIMES,
+    arrivalTimes: arrivalTimesOf(shop.hours ?? USUAL_HOURS),
     placesPerHalfDay: shop.placesPerHalfDay ?? PLACES,
     pegs: shop.pegs ?? PEGS,
   });
