@@ -21,6 +21,18 @@ export class ApiError extends Error {
   }
 }
 
+/** The typed details of an error with that code; null for everything else. */
+export function detailsOf<Details extends object>(error: unknown, code: ErrorCode): Partial<Details> | null {
+  if (!(error instanceof ApiError) || error.code !== code) return null;
+  return (error.details ?? {});
+}
+
+/** Told when the server no longer knows the session, wherever that is noticed. */
+let whenSignedOut: () => void = () => undefined;
+export function onSignedOut(tell: () => void): void {
+  whenSignedOut = tell;
+}
+
 export interface CallOptions {
   body?: unknown;
   /** Idempotency-Key: the same for every try of one intent, so that a retry never acts twice. */
@@ -40,7 +52,11 @@ export async function call<Answer>(
 ): Promise<Answer> {
   const response = await send(method, path, options);
   const answer = await readJson(response);
-  if (!response.ok) throw errorOf(response.status, answer);
+  if (!response.ok) {
+    const error = errorOf(response.status, answer);
+    if (error.code === 'unauthenticated') whenSignedOut();
+    throw error;
+  }
   syncClock(answer);
   return answer as Answer;
 }

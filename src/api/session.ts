@@ -26,7 +26,7 @@ export const signInByPassword = (slug: string, body: PasswordSignInBody) =>
 export const getPasswordLink = (slug: string, token: string) =>
   call<PasswordLinkView>('GET', `${shop(slug)}/password-links/${encodeURIComponent(token)}`);
 
-/** Sets the password and signs in. */
+/** Sets the password; signs nobody in. */
 export const setPassword = (slug: string, token: string, body: SetPasswordBody) =>
   call<SessionView>('POST', `${shop(slug)}/password-links/${encodeURIComponent(token)}`, { body });
 

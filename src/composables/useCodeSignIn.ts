@@ -1,11 +1,12 @@
 import { computed, shallowRef, type MaybeRefOrGetter, toValue } from 'vue';
 import { useZodForm } from './useZodForm';
-import { ApiError } from '@/api/client';
+import { detailsOf } from '@/api/client';
 import { askCode, signInByCode } from '@/api/session';
 import { currentLanguage } from '@/i18n';
 import {
   AskCodeBody,
   CodeSignInBody,
+  type OptedOutDetails,
   type SessionView,
   type WhichPersonDetails,
 } from '#shared/schemas/session';
@@ -30,7 +31,8 @@ export function useCodeSignIn(slug: MaybeRefOrGetter<string>, onSignedIn: (view:
   const step = shallowRef<'phone' | 'code'>('phone');
   const people = shallowRef<WhichPersonDetails['people']>([]);
   const wasSentAgain = shallowRef(false);
-  const isStopped = computed(() => hasCode(ask.failure.value, 'opted_out'));
+  /** Set while the phone is one that has answered STOP. */
+  const stopped = computed(() => detailsOf<OptedOutDetails>(ask.failure.value, 'opted_out'));
 
   async function request(): Promise<boolean> {
     ask.values.language = currentLanguage();
@@ -56,11 +58,9 @@ export function useCodeSignIn(slug: MaybeRefOrGetter<string>, onSignedIn: (view:
 
   /** The code was right, but several share the phone: ask which of them it is, and keep the code. */
   function takePeople(): void {
-    const error = enter.failure.value;
-    if (!hasCode(error, 'which_person')) return;
-    people.value = (error as ApiError).details
-      ? ((error as ApiError).details as WhichPersonDetails).people
-      : [];
+    const details = detailsOf<WhichPersonDetails>(enter.failure.value, 'which_person');
+    if (!details) return;
+    people.value = details.people ?? [];
     enter.failure.value = null;
   }
 
@@ -79,7 +79,7 @@ export function useCodeSignIn(slug: MaybeRefOrGetter<string>, onSignedIn: (view:
     enter,
     step,
     people,
-    isStopped,
+    stopped,
     wasSentAgain,
     request,
     requestAgain,
@@ -87,8 +87,4 @@ export function useCodeSignIn(slug: MaybeRefOrGetter<string>, onSignedIn: (view:
     signInAs,
     otherNumber,
   };
-}
-
-function hasCode(error: unknown, code: ApiError['code']): boolean {
-  return error instanceof ApiError && error.code === code;
 }

@@ -1,4 +1,5 @@
 import type { RouteLocationNormalized, RouteLocationRaw, Router } from 'vue-router';
+import { onSignedOut } from '@/api/client';
 import { currentLanguage, preferredLanguage, setLanguage, t } from '@/i18n';
 import { useSessionStore } from '@/stores/session';
 
@@ -7,6 +8,8 @@ export function homeOf(session: ReturnType<typeof useSessionStore>): RouteLocati
   const person = session.person;
   if (!person) return { name: 'home' };
   if (!session.isStaff) return { name: 'book', params: { shop: person.shop.slug } };
+  // A driver's own screen comes with the van; until then the shop's front page is all there is for him.
+  if (!session.may('rail.view')) return { name: 'welcome', params: { shop: person.shop.slug } };
   const worksAtTheDesk = person.roles.includes('counter') || person.roles.includes('owner');
   return { name: worksAtTheDesk ? 'gate' : 'rail' };
 }
@@ -41,8 +44,21 @@ function focusHeading(): void {
   heading?.focus({ preventScroll: true });
 }
 
+/** A staff page whose session has ended leads to the sign-in, and from there back. */
+function leaveWhenSignedOut(router: Router): void {
+  onSignedOut(() => {
+    const session = useSessionStore();
+    const shop = session.lastShop();
+    session.forget();
+    const { meta, fullPath } = router.currentRoute.value;
+    if (!meta.staff || !shop) return;
+    void router.push({ name: 'sign-in', params: { shop }, query: { next: fullPath } });
+  });
+}
+
 /** Hangs session, language, title and focus on the router. */
 export function installGuards(router: Router): void {
+  leaveWhenSignedOut(router);
   router.beforeEach(guardStaff);
   router.beforeEach(matchLanguage);
   router.afterEach((to, from, failure) => {

@@ -48,10 +48,12 @@ export const useSessionStore = defineStore('session', () => {
     forget();
   }
 
-  /** The server says that the session has ended. */
+  /** The session has ended. What anybody may read of a shop stays; what this person read does not. */
   function forget(): void {
     person.value = null;
-    for (const entry of cache.getEntries()) cache.remove(entry);
+    for (const entry of cache.getEntries()) {
+      if (entry.key[0] !== 'shop') cache.remove(entry);
+    }
   }
 
   const may = (ability: Ability) => person.value?.abilities.includes(ability) ?? false;
