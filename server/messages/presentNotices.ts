@@ -73,7 +73,7 @@ async function bodiesOf(
   const bodies = new Map<string, string | null>();
   for (const message of messages) {
     const person = people.get(message.personId ?? '');
-    const isOpen = message.status === 'pending' && message.body === null;
+    const isOpen = (message.status === 'pending' || message.status === 'demo') && message.body === null;
     bodies.set(message.id, isOpen && person ? await preview(ctx, message, person, visit) : message.body);
   }
   return bodies;

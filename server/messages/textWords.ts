@@ -13,22 +13,15 @@ const ORDER = ['corrected', 'ready', 'ready_other', 'checked_in', 'cancelled', '
 
 /** The text of a message. */
 export function wordText(facts: NewsFacts): string {
-  return (
-    firstThatFits(wordings(facts)) ??
-    firstThatFits(wordings(foldNames(facts))) ??
-    // A shop's own name or address can be longer than any wording allows for; the news still goes.
-    plainText(wordings(foldNames(facts)).at(-1) ?? '')
-  );
+  const candidates = wordings(foldNames(facts)).map(plainText);
+  // An address can be longer than any wording allows for; the news still goes, in the shortest words.
+  return candidates.find(fitsOneText) ?? candidates.at(-1) ?? '';
 }
 
 /** Whether a text stays in one segment of the short alphabet. */
 export function fitsOneText(text: string): boolean {
   const { encoding, segments } = textLength(text);
   return encoding === 'GSM-7' && segments === 1;
-}
-
-function firstThatFits(candidates: string[]): string | undefined {
-  return candidates.map(plainText).find(fitsOneText);
 }
 
 function wordings(facts: NewsFacts): string[] {
@@ -137,7 +130,7 @@ function capital(sentence: string): string {
   return sentence.charAt(0).toUpperCase() + sentence.slice(1);
 }
 
-/** Names as typed may carry letters outside the short alphabet: only then, and only there, marks are dropped. */
+/** Names as typed may carry letters outside the short alphabet, where one of them would take half the room. */
 function foldNames(facts: NewsFacts): NewsFacts {
   const fold = (machine: NamedMachine): NamedMachine => ({
     ...machine,

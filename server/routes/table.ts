@@ -1,6 +1,7 @@
 import type { Services } from '#server/lib/context';
 import { bookingRoutes } from './booking';
 import { codeRoutes } from './codes';
+import { hookRoutes } from './hooks';
 import { passwordLinkRoutes } from './passwordLinks';
 import { reportRoutes } from './reports';
 import type { Route } from './route';
@@ -8,6 +9,7 @@ import { sessionRoutes } from './session';
 import { shopFloorRoutes } from './shopFloor';
 import { shopRoutes } from './shops';
 import { stubRoutes } from './stub';
+import { unsubscribeRoutes } from './unsubscribe';
 
 /** Every route of the server. Nothing else is mounted. */
 export function routeTable(services: Services): Route[] {
@@ -20,5 +22,7 @@ export function routeTable(services: Services): Route[] {
     ...stubRoutes,
     ...shopFloorRoutes,
     ...reportRoutes,
+    ...unsubscribeRoutes,
+    ...hookRoutes(services),
   ];
 }
