@@ -26,10 +26,11 @@ export function useBookingSteps(furthest: () => Exclude<Step, 'done'>, isBooked:
   // A new step is read from its top, by eye and by ear, or from the field that was wrong.
   watch(step, async () => {
     await nextTick();
-    const wrong = document.querySelector<HTMLElement>('main [aria-invalid="true"]');
+    const page = document.querySelector('main') ?? document;
+    const wrong = page.querySelector<HTMLElement>('[aria-invalid="true"]');
     if (wrong) return wrong.focus();
     window.scrollTo({ top: 0 });
-    const heading = document.querySelector<HTMLElement>('main h1');
+    const heading = page.querySelector<HTMLElement>('h1');
     heading?.setAttribute('tabindex', '-1');
     heading?.focus({ preventScroll: true });
   });
