@@ -14,7 +14,7 @@ function keyboard(rails: string[][]) {
 describe('the keyboard on the Rail', () => {
   const rails = [['a1', 'a2', 'a3'], [], ['c1'], ['d1', 'd2']];
 
-  it('puts one tag into the Tab order', () => {
+  it('starts at the first tag there is', () => {
     expect(keyboard(rails).keys.stop.value).toBe('a1');
     expect(keyboard([[], []]).keys.stop.value).toBeNull();
   });

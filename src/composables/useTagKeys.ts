@@ -8,7 +8,7 @@ const STEPS: Record<string, [rails: number, tags: number]> = {
 };
 
 /**
- * The keyboard on the Rail: one tag is in the Tab order, arrow keys go along its rail and from rail to rail.
+ * The keyboard on the Rail: arrow keys go along a rail and from rail to rail, from the tag that has it (`stop`).
  * @param rails ids of the tags, rail by rail
  * @param focus puts the keyboard on a tag
  */
