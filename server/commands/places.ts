@@ -47,12 +47,16 @@ export async function givePlaceBack(halfDayId: string): Promise<void> {
 
 /** Takes a place again for a cancel taken back; where it is gone meanwhile, the half-day holds one more, as an event. */
 export async function retakePlace(ctx: Ctx, halfDayId: string, reason: string): Promise<void> {
-  const [now] = await run<{ over: number; before: number }>(
+  // Locked first: beside others who do the same, each has to see what the one before him left.
+  const [before] = await run<{ over: number }>('select over from half_days where id = $1 for update', [
+    halfDayId,
+  ]);
+  const [now] = await run<{ over: number }>(
     `update half_days set taken = taken + 1, over = greatest(over, taken + 1 - places)
-     where id = $1 returning over, (select over from half_days earlier where earlier.id = $1) as before`,
+     where id = $1 returning over`,
     [halfDayId],
   );
-  if (!now || now.over === now.before) return;
+  if (!before || !now || now.over === before.over) return;
   await HalfDayEvent.create({
     shopId: ctx.shopId,
     id: newId(),
@@ -62,6 +66,6 @@ export async function retakePlace(ctx: Ctx, halfDayId: string, reason: string): 
     personId: ctx.actor?.personId ?? null,
     byName: ctx.actor?.name ?? '',
     reason,
-    places: now.over - now.before,
+    places: now.over - before.over,
   });
 }
