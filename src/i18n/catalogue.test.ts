@@ -15,7 +15,7 @@ const sources = import.meta.glob<string>(
 );
 
 /** The message at a dotted key, as the catalogue file has it. */
-function messageAt(messages: object, key: string): unknown {
+function messageAt(messages: unknown, key: string): unknown {
   return key
     .split('.')
     .reduce<unknown>((at, step) => (at as Record<string, unknown> | undefined)?.[step], messages);
