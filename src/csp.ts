@@ -10,3 +10,7 @@ document.createElement = (tag: string, options?: ElementCreationOptions) => {
   if (tag === 'style') element.nonce = nonce;
   return element;
 };
+
+// Zod would first try whether it may compile its checks, which the policy refuses and reports. Set before zod loads:
+// it comes with the pages that have forms.
+Reflect.set(globalThis, '__zod_globalConfig', { jitless: true });
