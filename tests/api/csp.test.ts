@@ -152,9 +152,10 @@ describe('reports of browsers', () => {
   test('anything else is refused, and one address cannot fill the log', async () => {
     const client = visitor(app);
     await client.post('/api/csp-reports').send({ hello: 1 }).expect(400);
-    const answers = [];
-    for (let at = 0; at < 61; at += 1)
+    const answers: number[] = [];
+    for (let at = 0; at < 61; at += 1) {
       answers.push((await client.post('/api/csp-reports').send(single)).status);
+    }
     expect(answers.filter((status) => status === 204)).toHaveLength(60);
     expect(answers.at(-1)).toBe(429);
   });

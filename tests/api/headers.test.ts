@@ -1,3 +1,4 @@
+import type supertest from 'supertest';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { routeTable } from '#server/routes/table';
 import { makeShop, type TestShop } from '../support/factories';
@@ -27,10 +28,10 @@ const directivesOf = (policy: string): Record<string, string> =>
     policy.split('; ').map((part) => [part.split(' ')[0], part.split(' ').slice(1).join(' ')]),
   );
 
-async function fetchRoute(method: 'get' | 'post', path: string) {
+function fetchRoute(method: 'get' | 'post', path: string): supertest.Test {
   const filled = path.replace(':shop', shop.slug).replace(/:\w+/g, 'x');
   const client = visitor(app);
-  return method === 'get' ? client.get(filled) : client.post(filled).send({});
+  return method === 'get' ? client.get(filled) : (client.post(filled).send({}) as supertest.Test);
 }
 
 test('every route answers with the security headers and a policy of its own nonce', async () => {

@@ -43,6 +43,12 @@ let passwordHash: Promise<string> | undefined;
 /** All test staff share one password, which is hashed once. */
 const sharedHash = (): Promise<string> => (passwordHash ??= hashPassword(PASSWORD));
 
+function areaCode(index: number): number {
+  const found = AREA_CODES[index];
+  if (!found) throw new Error('more shops in one test file than there are area codes in the list');
+  return found;
+}
+
 function phonesOf(area: number): () => string {
   let next = 100;
   return () => `+1${area}5550${next++}`;
@@ -51,7 +57,7 @@ function phonesOf(area: number): () => string {
 /** Makes a shop that is ready to work. */
 export async function makeShop(app: TestApp, changes: Partial<NewShop> = {}): Promise<TestShop> {
   const index = shopsMade++;
-  const nextPhone = phonesOf(AREA_CODES[index % AREA_CODES.length] ?? 303);
+  const nextPhone = phonesOf(areaCode(index));
   const given: NewShop = {
     slug: `shop-${index}`,
     name: `Test Shop ${index}`,
