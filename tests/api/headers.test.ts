@@ -23,15 +23,18 @@ const ON_EVERY_ANSWER = {
   'x-frame-options': 'DENY',
 };
 
-const directivesOf = (policy: string): Record<string, string> =>
-  Object.fromEntries(
-    policy.split('; ').map((part) => [part.split(' ')[0], part.split(' ').slice(1).join(' ')]),
+const directivesOf = (policy: string): Map<string, string> =>
+  new Map(
+    policy.split('; ').map((part) => {
+      const [name = '', ...values] = part.split(' ');
+      return [name, values.join(' ')];
+    }),
   );
 
-function fetchRoute(method: 'get' | 'post', path: string): supertest.Test {
+function fetchRoute(method: 'get' | 'post', path: string): Promise<supertest.Response> {
   const filled = path.replace(':shop', shop.slug).replace(/:\w+/g, 'x');
   const client = visitor(app);
-  return method === 'get' ? client.get(filled) : (client.post(filled).send({}) as supertest.Test);
+  return Promise.resolve(method === 'get' ? client.get(filled) : client.post(filled).send({}));
 }
 
 test('every route answers with the security headers and a policy of its own nonce', async () => {
@@ -59,7 +62,7 @@ test('the content policy lets nothing in from elsewhere and nothing inline but s
   const policy = String(answer.headers['content-security-policy']);
   const nonce = /'nonce-([^']+)'/.exec(policy)?.[1] ?? '';
   expect(Buffer.from(nonce, 'base64')).toHaveLength(16);
-  expect(directivesOf(policy)).toEqual({
+  expect(Object.fromEntries(directivesOf(policy))).toEqual({
     'default-src': "'self'",
     'script-src': "'self'",
     'script-src-attr': "'none'",
