@@ -86,10 +86,11 @@ async function keepTrueNotices(ctx: Ctx, message: Message, person: Person): Prom
   const later: Notice[] = [];
   let isOvertaken = false;
   for (const notice of notices) {
-    const verdict = judge(notice, visit);
-    if (typeof verdict === 'object') await notice.update({ releaseAt: verdict.waitsUntil });
-    if (verdict === 'overtaken' || verdict === 'withdrawn') await notice.update({ state: verdict });
-    else (notice.releaseAt > ctx.now ? later : now).push(notice);
+    const verdict = notice.releaseAt > ctx.now ? 'early' : judge(notice, visit);
+    if (verdict === 'stands') now.push(notice);
+    else if (verdict === 'early') later.push(notice);
+    else if (typeof verdict === 'object') later.push(await notice.update({ releaseAt: verdict.waitsUntil }));
+    else await notice.update({ state: verdict });
     isOvertaken ||= verdict === 'overtaken';
   }
   if (now.length > 0) {

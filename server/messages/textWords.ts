@@ -53,12 +53,17 @@ function sentences(facts: NewsFacts, namesOf: (group: MachineNews[]) => string):
       n: group.length,
       names: namesOf(group),
       day: dayForText(facts),
-      stage: group[0]?.stage ? say(`stage.${group[0].stage}`) : '',
+      stage: stageWords(say, group[0]),
     }),
   );
   return [...bookedSentence(facts), ...said]
     .map((sentence, index) => (index > 0 ? capital(sentence) : sentence))
     .join(' ');
+}
+
+/** Only a correction says where a machine stands. */
+function stageWords(say: Say, news: MachineNews | undefined): string {
+  return news?.kind === 'corrected' && news.stage ? say(`stage.${news.stage}`) : '';
 }
 
 function bookedSentence(facts: NewsFacts): string[] {

@@ -12,6 +12,7 @@ import type { Services } from '#server/lib/context';
 import { asRole, POOLS } from '#server/lib/db';
 import { newId } from '#server/lib/ids';
 import type { TaskPayloads } from '#server/lib/queue';
+import { watchPool } from '#server/lib/watchPool';
 import { cleanUp } from './cleanUp';
 import { everySoOften } from './everySoOften';
 import { beat, BEAT_MS, forget, freeTasksOfTheDead } from './heartbeat';
@@ -37,7 +38,7 @@ export async function startWorker(services: Services, senders: Senders): Promise
     max: POOLS.workerOwner,
     application_name: 'benchbell worker',
   });
-  owner.on('error', (error) => log.error({ err: error }, 'an idle connection broke'));
+  watchPool(owner, log);
   const logger = queueLogger(services);
   const utils = await makeWorkerUtils({ pgPool: owner, logger });
   const { runner, poolId } = await startQueue(services, senders, { id, owner, logger });
