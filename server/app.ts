@@ -4,6 +4,7 @@ import { auditRefusals } from '#server/middlewares/auditRefusals';
 import { answerErrors, unknownAddress } from '#server/middlewares/errors';
 import { requestId, securityHeaders } from '#server/middlewares/headers';
 import { refuseCrossSite } from '#server/middlewares/crossSite';
+import { plainAddress } from '#server/middlewares/plainAddress';
 import { sessions } from '#server/middlewares/session';
 import { mountRoutes } from '#server/routes/mount';
 import { routeTable } from '#server/routes/table';
@@ -17,7 +18,7 @@ export async function createApp(services: Services): Promise<Express> {
   app.disable('x-powered-by');
   app.set('trust proxy', services.env.TRUSTED_HOPS);
   app.set('query parser', 'simple');
-  app.use(requestId, securityHeaders(services.env), refuseCrossSite(services.env));
+  app.use(requestId, plainAddress, securityHeaders(services.env), refuseCrossSite(services.env));
   app.use(
     '/api',
     express.json({

@@ -2,7 +2,7 @@
  * Books a drop-off: the visit, a job and a tag for each machine, the places of the half-day, the link and the
  * notices, all or nothing.
  */
-import { AppError, fieldError } from '#server/errors';
+import { AppError } from '#server/errors';
 import { announceBooked } from '#server/messages/announce';
 import { toldByBooking } from '#server/messages/recipients';
 import { hangNewTag, newStubCode } from './codes';
@@ -10,7 +10,7 @@ import { useCode, type ProvedPhone } from './checkCode';
 import { bookerOf } from './booker';
 import { bookedMachines, type BookedMachine } from './bookedMachines';
 import { recordConsent } from './recordConsent';
-import { takePlaces } from './places';
+import { refuseTime, takePlaces } from './places';
 import type { Ctx } from '#server/lib/context';
 import { constraintOf, withShop } from '#server/lib/db';
 import { newId } from '#server/lib/ids';
@@ -18,7 +18,6 @@ import { once, type KeyedRequest } from '#server/lib/idempotency';
 import { createStubLink } from '#server/lib/links';
 import type { OpenShop } from '#server/lib/shops';
 import { Job, JobEvent, Visit, VisitEvent, type Person } from '#server/models/index';
-import { isOfferedTime } from '#server/queries/times';
 import { machineName } from '#shared/domain/machineName';
 import type { BookAnswer, BookBody } from '#shared/schemas/booking';
 
@@ -55,8 +54,7 @@ export function keyedBooking(body: BookBody, key: string): KeyedRequest {
 
 async function book(ctx: Ctx, { shop, body, proved }: BookInput): Promise<BookAnswer> {
   const arrivesAt = new Date(body.arrivesAt);
-  if (!(await isOfferedTime(shop, ctx.now, arrivesAt)))
-    throw fieldError('arrivesAt', 'errors.field.time_not_offered');
+  await refuseTime(ctx, shop, arrivesAt, body.machines.length);
   const booker = await bookerOf(ctx, body, proved);
   const machines = await bookedMachines(ctx, booker, body.machines);
   const halfDayId = await takePlaces(ctx, shop, arrivesAt, machines.length);

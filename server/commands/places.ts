@@ -2,21 +2,38 @@
  * Places: room for machines in a half-day. Taken in one guarded update with a check constraint behind it, so that
  * no two bookings get the same place however they race.
  */
-import { AppError } from '#server/errors';
+import { AppError, fieldError } from '#server/errors';
 import type { Ctx } from '#server/lib/context';
 import { newId } from '#server/lib/ids';
 import type { OpenShop } from '#server/lib/shops';
 import { run } from '#server/lib/db';
 import { HalfDayEvent } from '#server/models/index';
-import { nextFreeTimes } from '#server/queries/times';
+import { freeDays, nextFree, timeAt } from '#server/queries/times';
 import { halfOf, type Half } from '#shared/domain/hours';
-import type { TimesFullDetails } from '#shared/schemas/shop';
+import type { FreeDay, TimesFullDetails } from '#shared/schemas/shop';
 import { DateTime } from 'luxon';
 
 /** The half-day of an instant on the shop's own calendar. */
 export function halfDayOf(at: Date, zone: string): { day: string; half: Half } {
   const local = DateTime.fromJSDate(at, { zone });
   return { day: local.toISODate() ?? '', half: halfOf(local.toFormat('HH:mm')) };
+}
+
+/**
+ * Refuses what is plain before anything is written: a time that is not offered, or one that is full by now. Of those
+ * who race for the last place most end here, at little cost; `takePlaces` decides among the rest.
+ * @throws AppError invalid, times_full with the next free times
+ */
+export async function refuseTime(ctx: Ctx, shop: OpenShop, arrivesAt: Date, count: number): Promise<void> {
+  const days = await freeDays(shop, ctx.now, count);
+  const time = timeAt(days, arrivesAt);
+  if (!time) throw fieldError('arrivesAt', 'errors.field.time_not_offered');
+  if (time.full) throw timesFull(halfDayOf(arrivesAt, shop.zone).half, days);
+}
+
+function timesFull(half: Half, days: readonly FreeDay[]): AppError {
+  const details: TimesFullDetails = { half, next: nextFree(days) };
+  return new AppError('times_full', { details });
 }
 
 /**
@@ -36,8 +53,7 @@ export async function takePlaces(ctx: Ctx, shop: OpenShop, arrivesAt: Date, coun
     [day, half, count],
   );
   if (taken) return taken.id;
-  const details: TimesFullDetails = { half, next: await nextFreeTimes(shop, ctx.now, count) };
-  throw new AppError('times_full', { details });
+  throw timesFull(half, await freeDays(shop, ctx.now, count));
 }
 
 /** Gives one job's place back. */

@@ -7,10 +7,18 @@ import type { Services } from '#server/lib/context';
 import type { ErrorAnswer } from '#shared/errors';
 import type { Language } from '#shared/domain/when';
 
+/** The database is away, or all connections are in use for longer than anybody waits: it is worth another try. */
+const OUT_OF_REACH = new Set([
+  'SequelizeConnectionAcquireTimeoutError',
+  'SequelizeConnectionError',
+  'SequelizeConnectionRefusedError',
+]);
+
 /** What the body parser and Express itself throw, as errors of ours. */
 function known(error: unknown): AppError | null {
   if (error instanceof AppError) return error;
-  const { type, status } = error as { type?: string; status?: number };
+  const { type, status, name } = error as { type?: string; status?: number; name?: string };
+  if (OUT_OF_REACH.has(name ?? '')) return new AppError('unavailable', { retryAfter: 5, cause: error });
   if (type === 'entity.too.large')
     return new AppError('invalid', { fields: [{ path: '', key: 'errors.field.too_large' }], cause: error });
   if (type === 'entity.parse.failed' || status === 400) {
@@ -27,9 +35,10 @@ export function answerErrors({ log }: Services): ErrorRequestHandler {
   // Express knows an error handler by its four parameters.
   return (error: unknown, req, res, next) => {
     const found = known(error);
-    if (!found) log.error({ err: error, path: maskSecrets(req.path), requestId: req.id }, 'request failed');
-    if (res.headersSent) return next(error);
     const answer = found ?? new AppError('internal');
+    if (answer.status >= 500)
+      log.error({ err: error, path: maskSecrets(req.path), requestId: req.id }, 'request failed');
+    if (res.headersSent) return next(error);
     if (answer.retryAfter) res.set('Retry-After', String(answer.retryAfter));
     res.set('Cache-Control', 'no-store');
     res.status(answer.status).json(errorAnswer(answer, languageOf(req), req.id));

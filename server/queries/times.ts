@@ -2,7 +2,7 @@ import { DateTime } from 'luxon';
 import type { OpenShop } from '#server/lib/shops';
 import { rows } from '#server/lib/db';
 import { halfOf, instantOf, isOpenAt, workingDays, type Closure } from '#shared/domain/hours';
-import type { FreeDay } from '#shared/schemas/shop';
+import type { FreeDay, FreeTime } from '#shared/schemas/shop';
 
 const DAYS = 28;
 const NEXT = 6;
@@ -47,15 +47,13 @@ function freeDay(shop: OpenShop, day: DateTime, now: Date, hasRoom: (key: string
   return { date, times };
 }
 
-/** The next free times for so many machines, at most six. */
-export async function nextFreeTimes(shop: OpenShop, now: Date, count: number): Promise<string[]> {
-  const days = await freeDays(shop, now, count);
+/** The next free times of these days, at most six. */
+export function nextFree(days: readonly FreeDay[]): string[] {
   const free = days.flatMap((day) => day.times).filter((time) => !time.full);
   return free.slice(0, NEXT).map((time) => time.at);
 }
 
-/** Whether an instant is one of the arrival times that the shop offers, full or not. */
-export async function isOfferedTime(shop: OpenShop, now: Date, at: Date): Promise<boolean> {
-  const days = await freeDays(shop, now, 1);
-  return days.some((day) => day.times.some((time) => new Date(time.at).getTime() === at.getTime()));
+/** The arrival time that an instant is, full or not; undefined for an instant that is not offered. */
+export function timeAt(days: readonly FreeDay[], at: Date): FreeTime | undefined {
+  return days.flatMap((day) => day.times).find((time) => new Date(time.at).getTime() === at.getTime());
 }

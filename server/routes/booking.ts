@@ -7,15 +7,14 @@ import { AppError, fieldError } from '#server/errors';
 import type { Ctx } from '#server/lib/context';
 import { withShop } from '#server/lib/db';
 import { limitStubLookups } from '#server/lib/rateLimits';
-import { shopBySlug, type OpenShop } from '#server/lib/shops';
+import { atShop, loadShop } from '#server/lib/shopContext';
+import type { OpenShop } from '#server/lib/shops';
 import { presentFleet } from '#server/presenters/fleet';
 import { freeDays } from '#server/queries/times';
 import { may, rolesWith } from '#shared/policies/abilities';
 import { BookBody, FindStubBody, type BookAnswer, type FindStubAnswer } from '#shared/schemas/booking';
 import { TimesQuery, type TimesView } from '#shared/schemas/shop';
-import { route, type LoadInput, type Route } from './route';
-
-const loadShop = ({ params }: LoadInput): Promise<OpenShop> => shopBySlug(params.shop ?? '');
+import { route, type Route } from './route';
 
 export const bookingRoutes: Route[] = [
   route({
@@ -60,15 +59,13 @@ export const bookingRoutes: Route[] = [
 ];
 
 async function book(anyCtx: Ctx, shop: OpenShop, body: BookBody, key: string): Promise<BookAnswer> {
-  const isCustomerHere = anyCtx.actor?.shopId === shop.id && anyCtx.actor.accountId !== null;
-  const ctx: Ctx = { ...anyCtx, shopId: shop.id, actor: isCustomerHere && !body.guest ? anyCtx.actor : null };
+  const here = atShop(anyCtx, shop);
+  const ctx: Ctx = body.guest ? { ...here, actor: null } : here;
+  if (!body.guest && !ctx.actor) throw new AppError('unauthenticated');
+  if (!body.guest && !may(ctx.actor, 'book')) throw new AppError('forbidden');
   const replayed = await replayedBooking(ctx, body, key);
   if (replayed) return replayed;
-  if (!body.guest) {
-    if (!ctx.actor) throw new AppError('unauthenticated');
-    if (!may(ctx.actor, 'book')) throw new AppError('forbidden');
-    return bookVisit(ctx, { shop, body, key, proved: null });
-  }
+  if (!body.guest) return bookVisit(ctx, { shop, body, key, proved: null });
   const proved = await proveCode(ctx, {
     requestId: body.guest.requestId,
     code: body.guest.code,

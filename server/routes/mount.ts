@@ -2,7 +2,7 @@ import type { Express, Request, RequestHandler, Response } from 'express';
 import { z, type ZodType } from 'zod';
 import { AppError } from '#server/errors';
 import type { Ctx, Services } from '#server/lib/context';
-import { describeIssue } from '#shared/schemas/issues';
+import { describeIssues } from '#shared/schemas/issues';
 import { holds, type Actor } from '#shared/domain/roles';
 import type { Route, RouteDefinition } from './route';
 
@@ -58,7 +58,7 @@ function parse(schema: ZodType | undefined, input: unknown): unknown {
   if (!schema) return undefined;
   const result = schema.safeParse(input);
   if (result.success) return result.data;
-  throw new AppError('invalid', { fields: result.error.issues.map(describeIssue) });
+  throw new AppError('invalid', { fields: describeIssues(result.error.issues) });
 }
 
 function send(res: Response, status: number | undefined, result: unknown): void {

@@ -2,7 +2,7 @@ import { AppError } from '#server/errors';
 import { rows, withShop } from '#server/lib/db';
 import { hashToken } from '#server/lib/ids';
 import { readStub } from '#server/queries/stub';
-import type { StubView } from '#shared/schemas/stub';
+import type { LinkEndedDetails, StubView } from '#shared/schemas/stub';
 import { route, type LoadInput, type Route } from './route';
 
 /** The public page of a visit, behind its unguessable link. */
@@ -24,6 +24,10 @@ async function loadStub({ ctx, params }: LoadInput): Promise<Omit<StubView, 'now
   );
   const found = entry ? await withShop(entry.shop_id, () => readStub(tokenHash, ctx.now)) : null;
   if (!found) throw new AppError('not_found');
-  if (found.ended) throw new AppError('link_ended');
+  if (found.ended) throw new AppError('link_ended', { details: whomToAsk(found.view) });
   return found.view;
+}
+
+function whomToAsk({ shop: { slug, name, phone } }: Omit<StubView, 'now'>): LinkEndedDetails {
+  return { shop: { slug, name, phone } };
 }
