@@ -2,7 +2,9 @@
  * The pages: the built client with its files, or Vite's development server. Each answer of a page carries its own
  * nonce in place of the template's mark.
  */
+import { once } from 'node:events';
 import { readFile } from 'node:fs/promises';
+import { createServer, type AddressInfo } from 'node:net';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import compression from 'compression';
@@ -85,10 +87,21 @@ async function readBuilt(path: string): Promise<string> {
 }
 
 async function viteServer(): Promise<{ middleware: RequestHandler; read: ReadTemplate }> {
-  const { createServer } = await import('vite');
-  const vite = await createServer({ root: ROOT, server: { middlewareMode: true }, appType: 'custom' });
+  const { createServer: createVite } = await import('vite');
+  const server = { middlewareMode: true as const, hmr: { port: await freePort() } };
+  const vite = await createVite({ root: ROOT, server, appType: 'custom' });
   return {
     middleware: vite.middlewares,
     read: async (name, url) => vite.transformIndexHtml(url, await readFile(join(ROOT, name), 'utf8')),
   };
+}
+
+/** A port for the development server's web socket: its usual one belongs to whichever checkout came first. */
+async function freePort(): Promise<number> {
+  const probe = createServer().listen(0, '127.0.0.1');
+  await once(probe, 'listening');
+  const { port } = probe.address() as AddressInfo;
+  probe.close();
+  await once(probe, 'close');
+  return port;
 }
