@@ -24,6 +24,7 @@ export default defineConfig({
     browserName: 'chromium',
     launchOptions: { executablePath, args },
     locale: 'en-US',
+    actionTimeout: 15_000,
     trace: 'retain-on-failure',
     screenshot: 'only-on-failure',
   },
