@@ -37,8 +37,9 @@ export async function bookVisit(ctx: Ctx, input: BookInput): Promise<BookAnswer>
   try {
     return await withShop(shop.id, () => once(ctx, keyedBooking(body, key), () => book(ctx, input)));
   } catch (error) {
-    if (constraintOf(error) === 'jobs_one_open_per_machine')
+    if (constraintOf(error) === 'jobs_one_open_per_machine') {
       throw new AppError('machine_already_booked', { cause: error });
+    }
     throw error;
   }
 }

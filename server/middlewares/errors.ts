@@ -19,8 +19,9 @@ function known(error: unknown): AppError | null {
   if (error instanceof AppError) return error;
   const { type, status, name } = error as { type?: string; status?: number; name?: string };
   if (OUT_OF_REACH.has(name ?? '')) return new AppError('unavailable', { retryAfter: 5, cause: error });
-  if (type === 'entity.too.large')
+  if (type === 'entity.too.large') {
     return new AppError('invalid', { fields: [{ path: '', key: 'errors.field.too_large' }], cause: error });
+  }
   if (type === 'entity.parse.failed' || status === 400) {
     return new AppError('invalid', { fields: [{ path: '', key: 'errors.field.unreadable' }], cause: error });
   }
@@ -36,8 +37,9 @@ export function answerErrors({ log }: Services): ErrorRequestHandler {
   return (error: unknown, req, res, next) => {
     const found = known(error);
     const answer = found ?? new AppError('internal');
-    if (answer.status >= 500)
+    if (answer.status >= 500) {
       log.error({ err: error, path: maskSecrets(req.path), requestId: req.id }, 'request failed');
+    }
     if (res.headersSent) return next(error);
     if (answer.retryAfter) res.set('Retry-After', String(answer.retryAfter));
     res.set('Cache-Control', 'no-store');

@@ -30,7 +30,7 @@ function answer(services: Services, definition: RouteDefinition): RequestHandler
 }
 
 function contextOf(services: Services, req: Request): Ctx {
-  const actor = (req.user as Actor | undefined) ?? null;
+  const actor = req.user ?? null;
   return { ...services, shopId: actor?.shopId ?? '', actor, ip: req.ip ?? '', now: services.clock.now() };
 }
 
