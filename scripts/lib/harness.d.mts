@@ -49,6 +49,8 @@ export interface StackOptions {
   env?: Environment;
   /** Variables that win over all others. */
   extra?: Environment;
+  /** Variables of the web servers alone. */
+  extraWeb?: Environment;
   /** Default 'test'. */
   nodeEnv?: string;
   /** How many servers and workers; default 1 each. Servers after the first get free ports. */
