@@ -10,7 +10,7 @@ import type { Ctx, Services } from '#server/lib/context';
 import { run, withShop } from '#server/lib/db';
 import { newId, pick } from '#server/lib/ids';
 import { openNewShop, USUAL_HOURS } from '#server/lib/newShop';
-import { unitShopOf, type OpenShop } from '#server/lib/shops';
+import { unitShopOf, type ShopProfile } from '#server/lib/shops';
 import {
   Account,
   ComplaintKind,
@@ -32,7 +32,7 @@ import type { DemoAccount, DemoPerson, DemoShop, DemoStep, DemoVisit } from './s
 /** What the seeding of one shop works with. */
 interface Stage {
   services: Services;
-  shop: OpenShop;
+  shop: ShopProfile;
   at: (day: number, time: string) => Date;
   /** Staff by e-mail, customers by key. */
   actors: Map<string, Actor>;

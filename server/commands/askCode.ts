@@ -4,7 +4,7 @@ import { run, withShop } from '#server/lib/db';
 import { newId } from '#server/lib/ids';
 import { CODE_LIFE_MS, codeHmac, drawCode, NO_CODE } from '#server/lib/loginCodes';
 import { limitCodes } from '#server/lib/rateLimits';
-import type { OpenShop } from '#server/lib/shops';
+import type { ShopProfile } from '#server/lib/shops';
 import { takeAtLeast } from '#server/lib/steady';
 import { sendCodeText } from '#server/messages/sendCode';
 import { LoginCode, OptOut } from '#server/models/index';
@@ -21,7 +21,7 @@ const STOPPED_FOR_SECONDS = 60 * 60;
  * Sends a code to a phone. To sign in, a phone that the shop does not know gets none, and the answer is the same.
  * @throws AppError too_many, opted_out
  */
-export async function askCode(ctx: Ctx, shop: OpenShop, body: AskCodeBody): Promise<AskCodeAnswer> {
+export async function askCode(ctx: Ctx, shop: ShopProfile, body: AskCodeBody): Promise<AskCodeAnswer> {
   await limitCodes(ctx, body.phone);
   const answer = await takeAtLeast(STEADY_MS, () => withShop(shop.id, () => decide(ctx, shop, body)));
   if (answer === 'stopped') throw new AppError('too_many', { retryAfter: STOPPED_FOR_SECONDS });
@@ -29,7 +29,7 @@ export async function askCode(ctx: Ctx, shop: OpenShop, body: AskCodeBody): Prom
 }
 
 // A stop is returned, not thrown: its record must outlive the unit of work.
-async function decide(ctx: Ctx, shop: OpenShop, body: AskCodeBody): Promise<AskCodeAnswer | 'stopped'> {
+async function decide(ctx: Ctx, shop: ShopProfile, body: AskCodeBody): Promise<AskCodeAnswer | 'stopped'> {
   await refuseOptedOut(shop, body.phone);
   if (await codeStop(ctx, shop)) return 'stopped';
   const people = await peopleOfPhone(body.phone);
@@ -54,7 +54,7 @@ async function decide(ctx: Ctx, shop: OpenShop, body: AskCodeBody): Promise<AskC
   return { requestId, expiresAt: expiresAt.toISOString() };
 }
 
-async function refuseOptedOut(shop: OpenShop, phone: string): Promise<void> {
+async function refuseOptedOut(shop: ShopProfile, phone: string): Promise<void> {
   if (!(await OptOut.findOne({ where: { phone, optedOut: true } }))) return;
   const details: OptedOutDetails = {
     shopPhone: shop.settings.phone,

@@ -15,14 +15,14 @@ import type { Ctx } from '#server/lib/context';
 import { constraintOf, withShop } from '#server/lib/db';
 import { newId } from '#server/lib/ids';
 import { once, type KeyedRequest } from '#server/lib/idempotency';
-import { createStubLink } from '#server/lib/links';
-import type { OpenShop } from '#server/lib/shops';
+import { createStubLink, stubPathOf } from '#server/lib/links';
+import type { ShopProfile } from '#server/lib/shops';
 import { Job, JobEvent, Visit, VisitEvent, type Person } from '#server/models/index';
 import { machineName } from '#shared/domain/machineName';
 import type { BookAnswer, BookBody } from '#shared/schemas/booking';
 
 export interface BookInput {
-  shop: OpenShop;
+  shop: ShopProfile;
   body: BookBody;
   key: string;
   /** A guest's proof of the phone; null for whoever is signed in. */
@@ -35,13 +35,22 @@ export interface BookInput {
 export async function bookVisit(ctx: Ctx, input: BookInput): Promise<BookAnswer> {
   const { shop, body, key } = input;
   try {
-    return await withShop(shop.id, () => once(ctx, keyedBooking(body, key), () => book(ctx, input)));
+    const kept = await withShop(shop.id, () => once(ctx, keyedBooking(body, key), () => book(ctx, input)));
+    return withStubPath(ctx, kept);
   } catch (error) {
     if (constraintOf(error) === 'jobs_one_open_per_machine') {
       throw new AppError('machine_already_booked', { cause: error });
     }
     throw error;
   }
+}
+
+/** A booking's answer as it is kept for a second try: by the id of its link, whose address is a secret. */
+export type KeptBooking = Omit<BookAnswer, 'stubPath'> & { linkId: string };
+
+/** The answer of a booking from what is kept of it. */
+export function withStubPath({ env }: Pick<Ctx, 'env'>, { linkId, ...kept }: KeptBooking): BookAnswer {
+  return { ...kept, stubPath: stubPathOf(env, linkId) };
 }
 
 /** A second try after an answer got lost may carry a newer code; the booking that it means is the same. */
@@ -53,7 +62,7 @@ export function keyedBooking(body: BookBody, key: string): KeyedRequest {
   };
 }
 
-async function book(ctx: Ctx, { shop, body, proved }: BookInput): Promise<BookAnswer> {
+async function book(ctx: Ctx, { shop, body, proved }: BookInput): Promise<KeptBooking> {
   const arrivesAt = new Date(body.arrivesAt);
   await refuseTime(ctx, shop, arrivesAt, body.machines.length);
   const booker = await bookerOf(ctx, body, proved);
@@ -75,7 +84,7 @@ async function book(ctx: Ctx, { shop, body, proved }: BookInput): Promise<BookAn
   return {
     visitId: visit.id,
     stubCode: visit.stubCode,
-    stubPath: await createStubLink(ctx, { visitId: visit.id, personId: booker.id, purpose: 'screen' }),
+    linkId: await createStubLink(ctx, { visitId: visit.id, personId: booker.id, purpose: 'screen' }),
     arrivesAt: body.arrivesAt,
     jobs,
     toldBy: await toldByBooking(ctx, booker),

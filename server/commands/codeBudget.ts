@@ -2,7 +2,7 @@ import { audit } from '#server/lib/audit';
 import type { Ctx } from '#server/lib/context';
 import { rows } from '#server/lib/db';
 import { NO_CODE } from '#server/lib/loginCodes';
-import type { OpenShop } from '#server/lib/shops';
+import type { ShopProfile } from '#server/lib/shops';
 
 const DAY_MS = 24 * 60 * 60_000;
 const ALARM_SHARE = 0.8;
@@ -19,7 +19,7 @@ export type CodeStop = 'budget' | 'conversion';
  * is exact. Alarms and stops are recorded once in 24 hours, and a stop ends as the codes that caused it get older
  * than that.
  */
-export async function codeStop(ctx: Ctx, shop: OpenShop): Promise<CodeStop | null> {
+export async function codeStop(ctx: Ctx, shop: ShopProfile): Promise<CodeStop | null> {
   await rows("select pg_advisory_xact_lock(hashtextextended('codes ' || $1, 0))", [shop.id]);
   const sent = await sentToday(ctx);
   const limit = shop.settings.codesPerDay;

@@ -1,8 +1,8 @@
 import { AppError } from '#server/errors';
 import type { Ctx } from '#server/lib/context';
 import { rows, withShop } from '#server/lib/db';
-import { createStubLink } from '#server/lib/links';
-import type { OpenShop } from '#server/lib/shops';
+import { createStubLink, stubPathOf } from '#server/lib/links';
+import type { ShopProfile } from '#server/lib/shops';
 import { isCode, normalizeCode } from '#shared/domain/tagCode';
 import type { FindStubBody } from '#shared/schemas/booking';
 
@@ -11,7 +11,7 @@ import type { FindStubBody } from '#shared/schemas/booking';
  * machine. A wrong code and wrong digits are answered alike.
  * @returns the path of a fresh link
  */
-export async function findStub(ctx: Ctx, shop: OpenShop, body: FindStubBody): Promise<string> {
+export async function findStub(ctx: Ctx, shop: ShopProfile, body: FindStubBody): Promise<string> {
   const code = normalizeCode(body.code);
   return withShop(shop.id, async () => {
     const [found] = await rows<{ visit_id: string; person_id: string }>(
@@ -26,9 +26,10 @@ export async function findStub(ctx: Ctx, shop: OpenShop, body: FindStubBody): Pr
       [isCode(code) ? code : '', body.lastFour],
     );
     if (!found) throw new AppError('not_found');
-    return createStubLink(
+    const linkId = await createStubLink(
       { ...ctx, shopId: shop.id },
       { visitId: found.visit_id, personId: found.person_id, purpose: 'found' },
     );
+    return stubPathOf(ctx.env, linkId);
   });
 }

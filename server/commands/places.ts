@@ -5,7 +5,7 @@
 import { AppError, fieldError } from '#server/errors';
 import type { Ctx } from '#server/lib/context';
 import { newId } from '#server/lib/ids';
-import type { OpenShop } from '#server/lib/shops';
+import type { ShopProfile } from '#server/lib/shops';
 import { run } from '#server/lib/db';
 import { HalfDayEvent } from '#server/models/index';
 import { freeDays, nextFree, timeAt } from '#server/queries/times';
@@ -24,7 +24,7 @@ export function halfDayOf(at: Date, zone: string): { day: string; half: Half } {
  * who race for the last place most end here, at little cost; `takePlaces` decides among the rest.
  * @throws AppError invalid, times_full with the next free times
  */
-export async function refuseTime(ctx: Ctx, shop: OpenShop, arrivesAt: Date, count: number): Promise<void> {
+export async function refuseTime(ctx: Ctx, shop: ShopProfile, arrivesAt: Date, count: number): Promise<void> {
   const days = await freeDays(shop, ctx.now, count);
   const time = timeAt(days, arrivesAt);
   if (!time) throw fieldError('arrivesAt', 'errors.field.time_not_offered');
@@ -41,7 +41,12 @@ function timesFull(half: Half, days: readonly FreeDay[]): AppError {
  * @returns the id of the half-day
  * @throws AppError times_full with the next free times
  */
-export async function takePlaces(ctx: Ctx, shop: OpenShop, arrivesAt: Date, count: number): Promise<string> {
+export async function takePlaces(
+  ctx: Ctx,
+  shop: ShopProfile,
+  arrivesAt: Date,
+  count: number,
+): Promise<string> {
   const { day, half } = halfDayOf(arrivesAt, shop.zone);
   await run(
     `insert into half_days (shop_id, id, day, half, places) values ($1, $2, $3, $4, $5)

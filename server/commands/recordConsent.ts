@@ -1,6 +1,6 @@
 import type { Ctx } from '#server/lib/context';
 import { newId } from '#server/lib/ids';
-import type { OpenShop } from '#server/lib/shops';
+import type { ShopProfile } from '#server/lib/shops';
 import { translate } from '#server/lib/translate';
 import { Consent, type Person } from '#server/models/index';
 import type { Language } from '#shared/domain/when';
@@ -8,7 +8,7 @@ import type { Language } from '#shared/domain/when';
 /** Records that a person agreed to texts, in the very words that stood beside the box. */
 export async function recordConsent(
   ctx: Ctx,
-  shop: Pick<OpenShop, 'name'>,
+  shop: Pick<ShopProfile, 'name'>,
   person: Person,
   language: Language,
   source: string,

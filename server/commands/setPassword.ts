@@ -6,12 +6,12 @@ import { run, withShop } from '#server/lib/db';
 import { hashToken } from '#server/lib/ids';
 import { hashPassword } from '#server/lib/passwords';
 import { endSessionsOf } from '#server/lib/sessionStore';
-import type { OpenShop } from '#server/lib/shops';
+import type { ShopProfile } from '#server/lib/shops';
 import { PasswordLink, Person } from '#server/models/index';
 
 /** A password link that still works, with its person. */
 export interface OpenPasswordLink {
-  shop: OpenShop;
+  shop: ShopProfile;
   link: PasswordLink;
   person: Person;
 }
@@ -20,7 +20,11 @@ export interface OpenPasswordLink {
  * The link of a token.
  * @throws AppError not_found; link_ended when it has been used, is too old, or its person has left
  */
-export async function loadPasswordLink(ctx: Ctx, shop: OpenShop, token: string): Promise<OpenPasswordLink> {
+export async function loadPasswordLink(
+  ctx: Ctx,
+  shop: ShopProfile,
+  token: string,
+): Promise<OpenPasswordLink> {
   const found = await withShop(shop.id, async () => {
     const link = await PasswordLink.findOne({ where: { tokenHash: hashToken(token) } });
     return link && { link, person: await Person.findOne({ where: { id: link.personId, leftAt: null } }) };

@@ -3,7 +3,7 @@ import { withShop } from './db';
 import { Shop, ShopSettings } from '#server/models/index';
 
 /** A shop with its settings. */
-export interface OpenShop {
+export interface ShopProfile {
   id: string;
   slug: string;
   name: string;
@@ -22,22 +22,22 @@ export async function settingsOf(shopId: string): Promise<ShopSettings> {
  * The shop that an address names.
  * @throws AppError not_found, also for a suspended shop
  */
-export async function shopBySlug(slug: string): Promise<OpenShop> {
+export async function shopBySlug(slug: string): Promise<ShopProfile> {
   const shop = /^[a-z0-9-]{1,64}$/.test(slug)
     ? await Shop.findOne({ where: { slug, suspendedAt: null } })
     : null;
   if (!shop) throw new AppError('not_found');
-  return withShop(shop.id, () => openShop(shop));
+  return withShop(shop.id, () => profileOf(shop));
 }
 
 /** The shop of the present unit of work, with its settings. */
-export async function unitShopOf(shopId: string): Promise<OpenShop> {
+export async function unitShopOf(shopId: string): Promise<ShopProfile> {
   const shop = await Shop.findByPk(shopId);
   if (!shop) throw new AppError('not_found');
-  return openShop(shop);
+  return profileOf(shop);
 }
 
-async function openShop(shop: Shop): Promise<OpenShop> {
+async function profileOf(shop: Shop): Promise<ShopProfile> {
   const { id, slug, name, zone } = shop;
   return { id, slug, name, zone, settings: await settingsOf(id) };
 }

@@ -1,5 +1,5 @@
 import type { Ctx } from '#server/lib/context';
-import type { OpenShop } from '#server/lib/shops';
+import type { ShopProfile } from '#server/lib/shops';
 import { Closure, ComplaintKind } from '#server/models/index';
 import { MACHINE_KINDS } from '#shared/domain/machineKinds';
 import type { ShopView } from '#shared/schemas/shop';
@@ -8,7 +8,7 @@ import type { ShopView } from '#shared/schemas/shop';
 const CONSENT_VERSION = '2026-12';
 
 /** What anybody may read of a shop. Inside a unit of work. */
-export async function presentShop(ctx: Pick<Ctx, 'now'>, shop: OpenShop): Promise<ShopView> {
+export async function presentShop(ctx: Pick<Ctx, 'now'>, shop: ShopProfile): Promise<ShopView> {
   const { slug, name, zone, settings } = shop;
   const closures = await Closure.findAll({ order: ['fromDate'] });
   return {

@@ -1,5 +1,5 @@
 import { DateTime } from 'luxon';
-import type { OpenShop } from '#server/lib/shops';
+import type { ShopProfile } from '#server/lib/shops';
 import { rows } from '#server/lib/db';
 import { halfOf, instantOf, isOpenAt, workingDays, type Closure } from '#shared/domain/hours';
 import type { FreeDay, FreeTime } from '#shared/schemas/shop';
@@ -19,7 +19,7 @@ export function closuresFrom(date: string): Promise<Closure[]> {
  * The arrival times of four weeks, each with whether its half-day still has room for `count` machines. Times already
  * past are left out. Inside a unit of work.
  */
-export async function freeDays(shop: OpenShop, now: Date, count: number): Promise<FreeDay[]> {
+export async function freeDays(shop: ShopProfile, now: Date, count: number): Promise<FreeDay[]> {
   const today = DateTime.fromJSDate(now, { zone: shop.zone }).startOf('day');
   const date = today.toISODate() ?? '';
   const days = workingDays(today, DAYS, shop.settings.hours, await closuresFrom(date));
@@ -37,7 +37,7 @@ async function placesLeft(from: string): Promise<Map<string, number>> {
   return new Map(halves.map(({ key, room }) => [key, room]));
 }
 
-function freeDay(shop: OpenShop, day: DateTime, now: Date, hasRoom: (key: string) => boolean): FreeDay {
+function freeDay(shop: ShopProfile, day: DateTime, now: Date, hasRoom: (key: string) => boolean): FreeDay {
   const date = day.toISODate() ?? '';
   const times = shop.settings.arrivalTimes
     .filter((time) => isOpenAt(day, time, shop.settings.hours))

@@ -8,7 +8,7 @@ import type { Ctx } from '#server/lib/context';
 import { withShop } from '#server/lib/db';
 import { limitStubLookups } from '#server/lib/rateLimits';
 import { atShop, loadShop } from '#server/lib/shopContext';
-import type { OpenShop } from '#server/lib/shops';
+import type { ShopProfile } from '#server/lib/shops';
 import { presentFleet } from '#server/presenters/fleet';
 import { freeDays } from '#server/queries/times';
 import { may, rolesWith } from '#shared/policies/abilities';
@@ -58,7 +58,7 @@ export const bookingRoutes: Route[] = [
   }),
 ];
 
-async function book(anyCtx: Ctx, shop: OpenShop, body: BookBody, key: string): Promise<BookAnswer> {
+async function book(anyCtx: Ctx, shop: ShopProfile, body: BookBody, key: string): Promise<BookAnswer> {
   const here = atShop(anyCtx, shop);
   const ctx: Ctx = body.guest ? { ...here, actor: null } : here;
   if (!body.guest && !ctx.actor) throw new AppError('unauthenticated');

@@ -29,7 +29,7 @@ const view = (roles: Role[]): SessionView => ({
 });
 const visitor: Answer = { body: { now: '2026-12-01T18:40:00.000Z', person: null } };
 /** Opens a path with whoever is signed in, and says where that leads. */
-async function open(path: string, session: Answer) {
+async function arrive(path: string, session: Answer) {
   pretendServer({ 'GET /api/session': session });
   const { router, page, pinia } = await mountPage(RouterView, { path, guarded: true });
   return { path: router.currentRoute.value.fullPath, router, page, pinia };
@@ -41,30 +41,32 @@ afterEach(() => vi.unstubAllGlobals());
 
 describe('the door of the shop floor', () => {
   it('lets staff in', async () => {
-    expect((await open('/shop/rail', { body: view(['mechanic']) })).path).toBe('/shop/rail');
+    expect((await arrive('/shop/rail', { body: view(['mechanic']) })).path).toBe('/shop/rail');
   });
 
   it('sends a visitor to the sign-in of the shop last used here, and says where to go on', async () => {
     localStorage.setItem('benchbell.shop', 'cinder-flat');
-    expect((await open('/shop/jobs/7K4QM2', visitor)).path).toBe(
+    expect((await arrive('/shop/jobs/7K4QM2', visitor)).path).toBe(
       '/s/cinder-flat/sign-in?next=/shop/jobs/7K4QM2',
     );
   });
 
   it('sends a visitor of no shop to the start', async () => {
-    expect((await open('/shop/gate', visitor)).path).toBe('/');
+    expect((await arrive('/shop/gate', visitor)).path).toBe('/');
   });
 
   it('is shut for customers', async () => {
-    expect((await open('/shop/rail', { body: view(['manager']) })).path).toContain('/s/cinder-flat/sign-in');
+    expect((await arrive('/shop/rail', { body: view(['manager']) })).path).toContain(
+      '/s/cinder-flat/sign-in',
+    );
   });
 
   it('stays shut, without breaking, while the server is away', async () => {
-    expect((await open('/shop/rail', refusal(503, 'unavailable'))).path).toBe('/');
+    expect((await arrive('/shop/rail', refusal(503, 'unavailable'))).path).toBe('/');
   });
 
   it('is left when the session ends meanwhile', async () => {
-    const { router } = await open('/shop/rail', { body: view(['mechanic']) });
+    const { router } = await arrive('/shop/rail', { body: view(['mechanic']) });
     pretendServer({ 'GET /api/shop/rail': refusal(401, 'unauthenticated') });
     await getRail().catch(() => undefined);
     await flushPromises();
@@ -81,7 +83,7 @@ describe('where a person starts', () => {
     [['crew_lead'], { name: 'book', params: { shop: 'cinder-flat' } }],
     [['driver'], { name: 'welcome', params: { shop: 'cinder-flat' } }],
   ])('%j', async (roles, page) => {
-    const { pinia } = await open('/', { body: view(roles) });
+    const { pinia } = await arrive('/', { body: view(roles) });
     expect(homeOf(useSessionStore(pinia))).toEqual(page);
   });
 
@@ -101,10 +103,10 @@ describe('where a person starts', () => {
 
 describe('every page', () => {
   it('is read in the language of the person, the shop floor in English', async () => {
-    await open('/', { body: view(['mechanic']) });
+    await arrive('/', { body: view(['mechanic']) });
     expect(currentLanguage()).toBe('es');
     expect(document.title).toBe('Inicio – Benchbell');
-    await open('/shop/rail', { body: view(['mechanic']) });
+    await arrive('/shop/rail', { body: view(['mechanic']) });
     expect(currentLanguage()).toBe('en');
     expect(document.title).toBe('Rail – Benchbell');
   });
@@ -116,7 +118,7 @@ describe('every page', () => {
   });
 
   it('moves the focus to its heading when the reader goes there', async () => {
-    const { router } = await open('/', visitor);
+    const { router } = await arrive('/', visitor);
     expect(document.activeElement).toBe(document.body);
     await router.push('/s/cinder-flat');
     await vi.waitFor(() => expect(document.activeElement?.tagName).toBe('H1'));
