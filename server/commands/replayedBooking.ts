@@ -1,4 +1,4 @@
-import { keyedBooking } from './bookVisit';
+import { keyedBooking, withStubPath, type KeptBooking } from './bookVisit';
 import type { Ctx } from '#server/lib/context';
 import { withShop } from '#server/lib/db';
 import { answered } from '#server/lib/idempotency';
@@ -8,6 +8,7 @@ import type { BookAnswer, BookBody } from '#shared/schemas/booking';
  * The answer of a booking already made under this key. Asked before the code is looked at: the code of a booking
  * whose answer got lost is used up.
  */
-export function replayedBooking(ctx: Ctx, body: BookBody, key: string): Promise<BookAnswer | null> {
-  return withShop(ctx.shopId, () => answered<BookAnswer>(ctx, keyedBooking(body, key)));
+export async function replayedBooking(ctx: Ctx, body: BookBody, key: string): Promise<BookAnswer | null> {
+  const kept = await withShop(ctx.shopId, () => answered<KeptBooking>(ctx, keyedBooking(body, key)));
+  return kept && withStubPath(ctx, kept);
 }

@@ -9,7 +9,12 @@ interface NewLink {
   purpose: Link['purpose'];
 }
 
-/** Makes one person's link to the stub of a visit. @returns its path, `/t/…` */
+/** Where a link leads: its path, `/t/…`. Made again whenever it is needed, so that it need not be kept. */
+export function stubPathOf({ LINK_KEY }: Pick<Ctx['env'], 'LINK_KEY'>, linkId: string): string {
+  return `/t/${linkToken(LINK_KEY, linkId)}`;
+}
+
+/** Makes one person's link to the stub of a visit. @returns its id */
 export async function createStubLink(
   ctx: Pick<Ctx, 'shopId' | 'now' | 'env'>,
   input: NewLink,
@@ -19,5 +24,5 @@ export async function createStubLink(
   const tokenHash = hashToken(token);
   await Link.create({ shopId: ctx.shopId, id, tokenHash, createdAt: ctx.now, ...input });
   await run('insert into link_directory (token_hash, shop_id) values ($1, $2)', [tokenHash, ctx.shopId]);
-  return `/t/${token}`;
+  return id;
 }
