@@ -7,7 +7,7 @@ const START = ['START', 'UNSTOP', 'YES'];
 const HELP = ['HELP', 'INFO'];
 /** Sounds like a wish to get no more texts; a person decides. Accents are dropped before it is looked for. */
 const MAYBE_STOP =
-  /\b(stop|unsubscribe|opt out|opt-out|no more texts?|do not text|don'?t text|quit texting|remove me|take me off|no mas|no me (mande|mandes|envie|envies|escriba|escribas)|deje de|dejen de|basta|cancelar mensajes|darme de baja|dar de baja)\b/;
+  /\b(stop|unsubscribe|opt out|opt-out|no more texts?|do not text|don'?t text|quit texting|remove me|take me off|no mas|no me (?:mand|envi|escrib)\w*|deje de|dejen de|basta|cancelar mensajes|darme de baja|dar de baja)\b/;
 
 export type TextKind = 'stop' | 'start' | 'help' | 'maybe_stop' | 'answer' | 'other';
 

@@ -36,6 +36,8 @@ export interface KillReport {
   kills: { placed: number; worker: number; web: number };
   /** How often each job was moved. */
   movesPerJob: number[];
+  /** Texts of which, for a time, nobody knew whether they had gone. */
+  uncertain: number;
   /** How each message ended. */
   ends: Record<string, number>;
   /** Longest time from release to settlement. */
@@ -115,11 +117,13 @@ class Killer {
   async onChanged(): Promise<void> {
     this.#changed += 1;
     const { changes, webKills, workerKills } = this.plan;
-    if (this.#changed % Math.floor(changes / (webKills + 1)) === 0 && this.done.web < webKills)
-      {await this.#killWeb();}
+    if (this.#changed % Math.floor(changes / (webKills + 1)) === 0 && this.done.web < webKills) {
+      await this.#killWeb();
+    }
     const step = Math.floor(changes / (workerKills + 1));
-    if (this.#changed % step === Math.floor(step / 2) && this.done.worker < workerKills)
-      {await this.#killWorker('worker');}
+    if (this.#changed % step === Math.floor(step / 2) && this.done.worker < workerKills) {
+      await this.#killWorker('worker');
+    }
   }
 
   async #onAccepted(): Promise<void> {
@@ -227,7 +231,12 @@ async function judge(
     `select extract(epoch from max(m.settled_at - n.release_at))::float as seconds
      from notices n join messages m on m.shop_id = n.shop_id and m.id = n.message_id`,
   );
+  const [looked] = await ownerRows<{ n: number }>(
+    app,
+    'select count(*)::int as n from messages where look_after is not null',
+  );
   return {
+    uncertain: looked?.n ?? 0,
     textsPerVisit,
     strayTexts: messages.length - textsPerVisit.reduce((sum, n) => sum + n, 0),
     kills: killer.done,
