@@ -9,7 +9,9 @@ export async function signInStaff(page: Page, name: StaffName, to: 'gate' | 'rai
   await page.getByLabel('E-mail').fill(email);
   await page.getByLabel('Password', { exact: true }).fill(password);
   await page.getByLabel('Password', { exact: true }).press('Enter');
-  await page.waitForURL(`**/shop/${to}`);
+  await expect(
+    page.getByRole('heading', { level: 1, name: to === 'rail' ? 'The rail' : 'Gate sheet' }),
+  ).toBeVisible();
 }
 
 /** A stage's rail. */

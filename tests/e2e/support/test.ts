@@ -5,7 +5,7 @@ import { Watch } from './watch';
 
 interface Fixtures {
   watch: Watch;
-  /** Opens a page in a browser of its own: another person on another device. */
+  /** Opens a page in a browser of its own: another person on another device, whose language is English. */
   another: () => Promise<Page>;
 }
 
@@ -29,7 +29,8 @@ export const test = base.extend<Fixtures>({
   ],
   another: async ({ browser, watch }, use) => {
     await use(async () => {
-      const context = await browser.newContext({ extraHTTPHeaders: { 'X-Forwarded-For': newAddress() } });
+      const extraHTTPHeaders = { 'X-Forwarded-For': newAddress() };
+      const context = await browser.newContext({ extraHTTPHeaders, locale: 'en-US' });
       await watch.over(context);
       return context.newPage();
     });
