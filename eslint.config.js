@@ -21,7 +21,7 @@ const injectedClock = {
 };
 
 export default tseslint.config(
-  { ignores: ['dist', '.benchbell', 'node_modules', 'src/naive-ui.d.ts', 'test-results'] },
+  { ignores: ['dist', '.benchbell', 'node_modules', 'test-results'] },
   js.configs.recommended,
   ...tseslint.configs.recommendedTypeChecked,
   ...vue.configs['flat/recommended'],

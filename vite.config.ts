@@ -1,8 +1,6 @@
 import { fileURLToPath, URL } from 'node:url';
 import vueI18n from '@intlify/unplugin-vue-i18n/vite';
 import vue from '@vitejs/plugin-vue';
-import Components from 'unplugin-vue-components/vite';
-import { NaiveUiResolver } from 'unplugin-vue-components/resolvers';
 import { defineConfig } from 'vite';
 
 const path = (relative: string) => fileURLToPath(new URL(relative, import.meta.url));
@@ -17,7 +15,6 @@ export default defineConfig({
       runtimeOnly: true,
       strictMessage: false,
     }),
-    Components({ dirs: [], resolvers: [NaiveUiResolver()], dts: 'src/naive-ui.d.ts' }),
   ],
   resolve: { alias: { '@': path('./src') } },
   // The server puts a fresh nonce in its place with every answer.

@@ -91,13 +91,30 @@ function common(p: Palette): GlobalThemeOverrides['common'] {
   };
 }
 
-function overrides(p: Palette): GlobalThemeOverrides {
-  const control = {
+function input(p: Palette): GlobalThemeOverrides['Input'] {
+  const fault = `3px solid ${p.rust}`;
+  return {
+    heightMedium: '52px',
+    fontSizeMedium: '17px',
+    paddingMedium: '0 16px',
+    lineHeightTextarea: '1.35',
+    color: p.sheet,
+    colorHover: p.sheet,
+    colorFocus: p.sheet,
+    colorFocusError: p.sheet,
+    caretColorError: p.ink,
     border: `2px solid ${p.lineStrong}`,
     borderHover: `2px solid ${p.ink}`,
     borderFocus: `2px solid ${p.ink}`,
     boxShadowFocus: `0 0 0 3px ${p.ink}`,
+    borderError: fault,
+    borderHoverError: fault,
+    borderFocusError: fault,
+    boxShadowFocusError: `0 0 0 3px ${p.rust}`,
   };
+}
+
+function overrides(p: Palette): GlobalThemeOverrides {
   return {
     common: common(p),
     Button: {
@@ -105,20 +122,52 @@ function overrides(p: Palette): GlobalThemeOverrides {
       heightSmall: '44px',
       heightMedium: '48px',
       heightLarge: '56px',
+      borderRadiusSmall: '8px',
       borderRadiusMedium: '8px',
+      borderRadiusLarge: '8px',
       border: `2px solid ${p.ink}`,
+      fontSizeSmall: '15px',
+      fontSizeMedium: '17px',
+      fontSizeLarge: '18px',
+      paddingSmall: '0 16px',
+      paddingMedium: '0 24px',
+      paddingLarge: '0 28px',
+      opacityDisabled: '1',
+      // No ripple: metal gives way by a pixel, as every button here does.
+      waveOpacity: '0',
     },
-    Input: control,
-    InternalSelection: control,
+    Input: input(p),
     Radio: {
+      radioSizeMedium: '24px',
+      fontSizeMedium: '17px',
+      labelPadding: '0 0 0 12px',
+      boxShadow: `inset 0 0 0 2px ${p.lineStrong}`,
+      boxShadowActive: `inset 0 0 0 2px ${p.ink}`,
+      boxShadowHover: `inset 0 0 0 2px ${p.ink}`,
+      color: p.sheet,
       buttonHeightMedium: '46px',
       buttonBorderRadius: '6px',
       buttonBorderColor: p.ink,
       buttonColorActive: p.ink,
+      buttonColor: 'transparent',
+      buttonTextColor: p.ink,
+      buttonTextColorHover: p.ink,
       buttonTextColorActive: p.onInk,
       labelFontWeight: '700',
     },
-    Checkbox: { sizeMedium: '24px', colorChecked: p.ink, borderChecked: `2px solid ${p.ink}` },
+    Checkbox: {
+      sizeMedium: '24px',
+      fontSizeMedium: '17px',
+      labelPadding: '0 0 0 12px',
+      color: p.sheet,
+      colorChecked: p.ink,
+      checkMarkColor: p.onInk,
+      border: `2px solid ${p.lineStrong}`,
+      borderChecked: `2px solid ${p.ink}`,
+      borderFocus: `2px solid ${p.ink}`,
+      // The focus frames the whole line, as large as the finger's target.
+      boxShadowFocus: 'none',
+    },
     Switch: { railColorActive: p.ink },
     Form: { labelFontWeight: '800', labelTextColor: p.ink },
     DataTable: { thColor: 'transparent', thFontWeight: '800', tdColorHover: p.sunk, borderRadius: '0' },

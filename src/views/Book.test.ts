@@ -131,7 +131,7 @@ async function fillInWho(page: VueWrapper): Promise<void> {
   await field(page, 'Your name').setValue('Ana Duarte');
   await field(page, 'Company').setValue('Duarte Roofing');
   await field(page, 'Mobile phone').setValue('(303) 555-0118');
-  await page.get('.consent input').setValue(true);
+  await page.get('[role=checkbox]').trigger('click');
 }
 /** As a guest up to the last step, the code typed. */
 async function toTheEnd(page: VueWrapper): Promise<void> {
@@ -198,7 +198,7 @@ describe('what is missing', () => {
     await chooseMachineAndTime(page);
     await press(page, 'Next');
     await fillInWho(page);
-    await page.get('.consent input').setValue(false);
+    await page.get('[role=checkbox]').trigger('click');
     await press(page, 'Text me the code');
     expect(errorOf(page, field(page, 'E-mail'))).toContain('one of the two must reach you');
     expect(requests.map((request) => request.path)).not.toContain(CODES);

@@ -2,8 +2,9 @@
 import { PiniaColada } from '@pinia/colada';
 import { flushPromises, mount } from '@vue/test-utils';
 import { createPinia } from 'pinia';
+import { NMessageProvider } from 'naive-ui';
 import { vi } from 'vitest';
-import type { Component } from 'vue';
+import { h, type Component } from 'vue';
 import { createI18n } from 'vue-i18n';
 import { createMemoryHistory, createRouter } from 'vue-router';
 import { messages } from '@/i18n/en';
@@ -176,8 +177,8 @@ export async function mountFloor(
     ],
   });
   const i18n = createI18n({ legacy: false, locale: 'en', messages: { en: messages as never } });
-  const wrapper = mount(view, {
-    props,
+  const page = () => h(NMessageProvider, null, () => h(view, props));
+  const wrapper = mount(page, {
     attachTo: '#app',
     global: {
       plugins: [pinia, PiniaColada, i18n, router, { install: () => signIn(roles) }],
@@ -213,9 +214,12 @@ function reading(requests: Request[]): Omit<Floor, 'unmount' | 'requests'> {
   }
   function field(label: string): HTMLInputElement {
     const labels = [...document.querySelectorAll('label')];
-    const found = labels.find((one) => wordsOf(one).startsWith(label))?.control;
-    if (!found) throw new Error(`no field "${label}" among: ${labels.map(wordsOf).join(' | ')}`);
-    return found as HTMLInputElement;
+    const ticks = [...document.querySelectorAll<HTMLInputElement>('[role=checkbox]')];
+    const named = labels.find((one) => wordsOf(one).startsWith(label))?.control as
+      HTMLInputElement | undefined;
+    const found = named ?? ticks.find((one) => wordsOf(one).startsWith(label));
+    if (found) return found;
+    throw new Error(`no field "${label}" among: ${[...labels, ...ticks].map(wordsOf).join(' | ')}`);
   }
   return {
     sent: () => requests.filter((request) => request.method === 'POST'),
@@ -227,13 +231,13 @@ function reading(requests: Request[]): Omit<Floor, 'unmount' | 'requests'> {
       await flushPromises();
     },
     submit: async () => {
-      document.querySelector<HTMLButtonElement>('dialog button[type=submit]')?.click();
+      document.querySelector<HTMLButtonElement>('[role=dialog] button[type=submit]')?.click();
       await flushPromises();
     },
     field,
     fill: async (label, value) => {
       const control = field(label);
-      if (control.type === 'radio' || control.type === 'checkbox') control.click();
+      if (control.type === 'radio' || control.role === 'checkbox') control.click();
       else {
         control.value = value;
         control.dispatchEvent(new Event('input'));

@@ -158,7 +158,7 @@ describe('a move', () => {
     await lift();
     await floor.press('Stop workgive back as it is');
     expect(
-      [...document.querySelectorAll('dialog input[type=radio]')].map(
+      [...document.querySelectorAll('[role=dialog] input[type=radio]')].map(
         (input) => (input as HTMLInputElement).value,
       ),
     ).toEqual(['declined', 'given_back', 'not_worth_repairing', 'cannot_be_repaired']);

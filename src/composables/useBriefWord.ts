@@ -1,0 +1,21 @@
+import { useMessage } from 'naive-ui';
+import { ref } from 'vue';
+
+/** The latest brief word, for the live region of the app: Naive's messages are seen but not read out. */
+export const briefWord = ref('');
+
+/** Words that need no answer: they stand at the foot for a moment, and are read out. */
+export function useBriefWord() {
+  const message = useMessage();
+  /** Something was done. */
+  const say = (words: string): void => {
+    message.success(words);
+    briefWord.value = words;
+  };
+  /** Something beside the page's own work went wrong. */
+  const warn = (words: string): void => {
+    message.error(words);
+    briefWord.value = words;
+  };
+  return { say, warn };
+}
