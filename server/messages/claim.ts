@@ -5,9 +5,11 @@
 import type { Ctx } from '#server/lib/context';
 import { newId } from '#server/lib/ids';
 import type { Message } from '#server/models/index';
+import { numberToText } from '#server/queries/senderNumber';
 import { isWorkerAlive } from './liveWorkers';
 import { lockMessage } from './lockMessage';
 import { makeReady } from './makeReady';
+import { outgoingOf, type Outgoing } from './outgoing';
 import { settleFailed } from './settle';
 
 /** Longer than any request takes: by then a row that still says "sending" was left behind. */
@@ -18,9 +20,11 @@ const LOOK_LEASE_MS = 30_000;
 /** Nobody could say for this long: it is given up, visibly. */
 const GIVE_UP_MS = 4 * 60 * 60_000;
 const CODE_LIFE_MS = 10 * 60_000;
+const PUT_OFF_MS = 60_000;
 
 /** What the task does next; null: nothing, the world has moved on or the time has not come. */
-export type Claim = { act: 'send' | 'look'; message: Message } | null;
+export type Claim =
+  { act: 'send'; message: Message; outgoing: Outgoing } | { act: 'look'; message: Message } | null;
 
 /** Claims a message for this worker. Inside a unit of work; who holds the claim acts after it has committed. */
 export async function claimMessage(ctx: Ctx, messageId: string, workerId: string): Promise<Claim> {
@@ -64,6 +68,11 @@ async function claimLook(ctx: Ctx, message: Message): Promise<Claim> {
 async function claimSend(ctx: Ctx, message: Message, workerId: string): Promise<Claim> {
   if (await giveUp(ctx, message)) return null;
   if (!(await makeReady(ctx, message))) return null;
+  const from = message.channel === 'text' ? await numberToText(ctx.shopId) : '';
+  if (from === null) {
+    await settleFailed(ctx, message, 'no_sender', null);
+    return null;
+  }
   await message.update({
     status: 'sending',
     attempt: message.attempt + 1,
@@ -74,7 +83,22 @@ async function claimSend(ctx: Ctx, message: Message, workerId: string): Promise<
     notBefore: new Date(ctx.now.getTime() + LEASE_MS),
     queuedAt: null,
   });
-  return { act: 'send', message };
+  return { act: 'send', message, outgoing: await outgoingOf(ctx, message, from) };
+}
+
+/**
+ * After a failure of our own: tried again in a while, shown on the job, and given up like any other. Inside a unit of
+ * work.
+ */
+export async function putOff(ctx: Ctx, messageId: string): Promise<void> {
+  const message = await lockMessage(messageId);
+  if (message?.status !== 'pending' || message.notBefore > ctx.now) return;
+  await message.update({
+    problem: 'not_made',
+    firstClaimedAt: message.firstClaimedAt ?? ctx.now,
+    notBefore: new Date(ctx.now.getTime() + PUT_OFF_MS),
+    queuedAt: null,
+  });
 }
 
 /** A stale text is worse than none, and so is a code that has ended. */

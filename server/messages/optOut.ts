@@ -17,9 +17,12 @@ export async function stopTextsTo(
   source: OptOutSource,
   wording: string,
 ): Promise<void> {
-  await setOptOut(ctx, phone, true, source);
-  await recordConsents(ctx, phone, 'withdrawn', source, wording);
-  await audit(ctx, 'texts.stopped', phone, source);
+  // Said twice, or said by the carrier of a phone that we know of: recorded once.
+  if (!(await isOptedOut(phone))) {
+    await setOptOut(ctx, phone, true, source);
+    await recordConsents(ctx, phone, 'withdrawn', source, wording);
+    await audit(ctx, 'texts.stopped', phone, source);
+  }
   await turnPendingToEmail(ctx, phone);
 }
 

@@ -3,7 +3,6 @@ import type { Ctx } from '#server/lib/context';
 import type { OutgoingMail } from '#server/lib/mail';
 import type { OutgoingText } from '#server/lib/sms';
 import { settingsOf } from '#server/lib/shops';
-import { rows } from '#server/lib/db';
 import { Shop, type Message } from '#server/models/index';
 import { unsubscribeUrl } from './composeMessage';
 
@@ -12,28 +11,20 @@ export type Outgoing = { channel: 'text'; text: OutgoingText } | { channel: 'ema
 const STATUS_TEXT_LIFE_SECONDS = 14_400;
 const CODE_LIFE_SECONDS = 600;
 
-/** @throws Error when the shop has no sender number, so that the shop's operator hears of it */
-export async function outgoingOf(ctx: Ctx, message: Message): Promise<Outgoing> {
+/** @param from the shop's number, for a text */
+export async function outgoingOf(ctx: Ctx, message: Message, from: string): Promise<Outgoing> {
   if (message.channel === 'email') return { channel: 'email', mail: await outgoingMail(ctx, message) };
   const { id, attempt, kind, toAddress: to, body } = message;
   return {
     channel: 'text',
     text: {
-      from: await senderNumber(ctx.shopId),
+      from,
       to,
       body: body ?? '',
       statusCallback: `${ctx.env.PUBLIC_URL}/hooks/sms/status/${ctx.shopId}/${id}/${attempt}`,
       validitySeconds: kind === 'code' ? CODE_LIFE_SECONDS : STATUS_TEXT_LIFE_SECONDS,
     },
   };
-}
-
-async function senderNumber(shopId: string): Promise<string> {
-  const [row] = await rows<{ phone: string }>('select phone from sender_numbers where shop_id = $1', [
-    shopId,
-  ]);
-  if (!row) throw new Error(`shop ${shopId} has no number to text from`);
-  return row.phone;
 }
 
 async function outgoingMail(ctx: Ctx, message: Message): Promise<OutgoingMail> {

@@ -13,6 +13,8 @@ export const PROBLEMS = {
   mail_refused: 'The mail server refused it. Check the address with the customer.',
   email_stopped: 'This person ended the e-mails.',
   left: 'This person has left.',
+  no_sender: 'The shop has no number to text from.',
+  not_made: 'It could not be made ready. The log says why; it is tried again.',
 } as const;
 export type Problem = keyof typeof PROBLEMS;
 

@@ -7,9 +7,9 @@ import { withShop } from '#server/lib/db';
 import type { MailGateway } from '#server/lib/mail';
 import type { TaskPayloads } from '#server/lib/queue';
 import type { SendResult, SmsGateway } from '#server/lib/sms';
-import { claimMessage, setUnknown, type Claim } from '#server/messages/claim';
+import { claimMessage, putOff, setUnknown, type Claim } from '#server/messages/claim';
 import { lockMessage } from '#server/messages/lockMessage';
-import { outgoingOf, type Outgoing } from '#server/messages/outgoing';
+import type { Outgoing } from '#server/messages/outgoing';
 import { settleAccepted, settleFailed } from '#server/messages/settle';
 import { taskCtx } from '#server/messages/taskCtx';
 import { Message } from '#server/models/index';
@@ -34,7 +34,7 @@ export async function sendMessage(
   { shopId, messageId }: TaskPayloads['send_message'],
 ): Promise<void> {
   const start = performance.now();
-  const claimed = await withShop(shopId, () => take(taskCtx(services, shopId), messageId, workerId));
+  const claimed = await take(services, shopId, messageId, workerId);
   if (!claimed) return;
   if (claimed.act === 'look') return lookForText(services, senders.lookUp, claimed.message);
   if (performance.now() - start > FRESH_MS && !(await isStillOurs(claimed.message))) return;
@@ -42,12 +42,14 @@ export async function sendMessage(
   await withShop(shopId, () => record(taskCtx(services, shopId), claimed.message, result));
 }
 
-type Taken = { act: 'send'; message: Message; outgoing: Outgoing } | { act: 'look'; message: Message } | null;
-
-async function take(ctx: Ctx, messageId: string, workerId: string): Promise<Taken> {
-  const claim: Claim = await claimMessage(ctx, messageId, workerId);
-  if (claim?.act !== 'send') return claim ? { act: 'look', message: claim.message } : null;
-  return { act: 'send', message: claim.message, outgoing: await outgoingOf(ctx, claim.message) };
+/** A failure to make a message ready is ours, not the message's: it waits, and the task fails for all to see. */
+async function take(services: Services, shopId: string, messageId: string, workerId: string): Promise<Claim> {
+  try {
+    return await withShop(shopId, () => claimMessage(taskCtx(services, shopId), messageId, workerId));
+  } catch (error) {
+    await withShop(shopId, () => putOff(taskCtx(services, shopId), messageId));
+    throw error;
+  }
 }
 
 function isStillOurs({ id, shopId, claim }: Message): Promise<boolean> {

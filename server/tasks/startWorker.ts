@@ -25,6 +25,8 @@ const CRONTAB = '7 * * * * clean_up ?max=3';
 
 export interface Worker {
   id: string;
+  /** Rejects when the queue ends by itself. */
+  ended: Promise<void>;
   /** Takes no new tasks, finishes what is under way. */
   stop(): Promise<void>;
 }
@@ -39,6 +41,7 @@ export async function startWorker(services: Services, senders: Senders): Promise
     application_name: 'benchbell worker',
   });
   watchPool(owner, log);
+  await refuseStrongOwner(owner);
   const logger = queueLogger(services);
   const utils = await makeWorkerUtils({ pgPool: owner, logger });
   const { runner, poolId } = await startQueue(services, senders, { id, owner, logger });
@@ -49,6 +52,7 @@ export async function startWorker(services: Services, senders: Senders): Promise
   ];
   return {
     id,
+    ended: runner.promise,
     async stop() {
       await Promise.all(loops.slice(1).map((end) => end()));
       await runner.stop();
@@ -58,6 +62,15 @@ export async function startWorker(services: Services, senders: Senders): Promise
       await owner.end();
     },
   };
+}
+
+/** The queue's owner too must be a role that row security binds. */
+async function refuseStrongOwner(owner: Pool): Promise<void> {
+  const { rows: found } = await owner.query<{ name: string }>(
+    'select rolname as name from pg_roles where rolname = current_user and (rolsuper or rolbypassrls)',
+  );
+  if (found[0])
+    {throw new Error(`The database role ${found[0].name} is a superuser or bypasses row security.`);}
 }
 
 interface Queue {

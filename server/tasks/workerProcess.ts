@@ -22,6 +22,10 @@ export async function runWorkerProcess(replace: Partial<Senders> = {}): Promise<
   const mail = openMailGateway(env);
   const senders = { sms, mail, lookUp: (to: string) => sms.findSent(to), ...replace };
   const worker = await startWorker(services, senders);
+  worker.ended.catch((error: unknown) => {
+    log.fatal({ err: error }, 'the queue ended');
+    process.exit(1);
+  });
   process.stdout.write('worker ready\n');
   onSignal(async () => {
     await worker.stop();

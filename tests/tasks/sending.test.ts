@@ -189,6 +189,42 @@ describe('the phone', () => {
   }
 });
 
+describe('a message that cannot be made ready', () => {
+  it('waits a minute, says so on the job, and goes when the fault is mended', async () => {
+    const { id } = await message();
+    await outbox.owner.query(`alter table links rename to links_away`);
+    await expect(outbox.work()).rejects.toThrow(/links/);
+    await outbox.owner.query(`alter table links_away rename to links`);
+    expect((await notice())?.problem).toMatch(/could not be made ready/);
+    await outbox.work();
+    expect(texts()).toEqual([]);
+    pass(outbox.app, MINUTE);
+    await outbox.work();
+    expect([(await message()).id, (await message()).status, (await message()).problem]).toEqual([
+      id,
+      'accepted',
+      null,
+    ]);
+  });
+
+  it('and a shop without a number texts nobody, but mails', async () => {
+    await outbox.owner.query('delete from sender_numbers where shop_id = $1', [shop.id]);
+    await outbox.work();
+    expect([(await message()).status, (await message()).problem]).toEqual(['failed', 'no_sender']);
+    expect(await mails()).toHaveLength(1);
+  });
+});
+
+describe('the gateways', () => {
+  it('refuse to work while a unit of work is open', async () => {
+    const inUnit = (act: () => Promise<unknown>) => withShop(shop.id, act);
+    const text = { from: shop.sender, to: phoneOf(), body: 'x', statusCallback: '', validitySeconds: 60 };
+    await expect(inUnit(() => outbox.senders.sms.send(text))).rejects.toThrow('inside a unit of work');
+    await expect(inUnit(() => outbox.senders.lookUp(text.to))).rejects.toThrow('inside a unit of work');
+  });
+  const phoneOf = () => shop.crewLead.phone ?? '';
+});
+
 describe('a worker that died', () => {
   it('leaves a claim that another takes over: the text is looked for before it goes', async () => {
     const { id } = await message();
@@ -282,6 +318,36 @@ describe('an e-mail', () => {
     await visitor(outbox.app)
       .get(`/api${path.slice(0, -1)}_`)
       .expect(404);
+  });
+
+  it('lets nobody write into its headers', async () => {
+    await outbox.app.owner.query(`update shops set name = E'Flat\\r\\nBcc: evil@example.com' where id = $1`, {
+      bind: [shop.id],
+    });
+    await bookJobs(outbox.app, shop, {}, shop.manager);
+    await outbox.work();
+    const mail = (await booked()).at(-1);
+    expect(mail?.from).toContain('Flat Bcc: evil@example.com');
+    expect([mail?.headers.bcc, mail?.envelope.to]).toEqual([undefined, [shop.manager.email]]);
+    expect(await outbox.mailsTo('evil@example.com')).toEqual([]);
+  });
+
+  it('is tried again when the server is away, and refused for good only by a refusal', async () => {
+    outbox.mail.set([{ kind: 'refuse', code: 451, next: 1 }]);
+    await bookJobs(outbox.app, shop, {}, shop.manager);
+    await outbox.work();
+    expect(await booked()).toHaveLength(1);
+    pass(outbox.app, 2 * SECOND);
+    await outbox.work();
+    expect(await booked()).toHaveLength(2);
+    outbox.mail.set([{ kind: 'refuse', code: 550, next: 1 }]);
+    await bookJobs(outbox.app, shop, {}, shop.manager);
+    await outbox.work();
+    pass(outbox.app, HOUR);
+    await outbox.work();
+    expect(await booked()).toHaveLength(2);
+    const row = (await outbox.messagesOf(shop)).find(({ status }) => status === 'failed');
+    expect([row?.channel, row?.problem, row?.errorCode]).toEqual(['email', 'mail_refused', '550']);
   });
 
   it('says who sends it, and has one Message-ID on every try', async () => {

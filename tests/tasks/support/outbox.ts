@@ -8,6 +8,7 @@ import { randomUUID } from 'node:crypto';
 import { Logger, runOnce } from 'graphile-worker';
 import { Pool } from 'pg';
 import { startFakeMail } from '#fakes/fake-mail/fakeMail';
+import type { MailFault } from '#fakes/fake-mail/faults';
 import type { StoredMail } from '#fakes/fake-mail/mailStore';
 import { startFakeSms, type FakeSms } from '#fakes/fake-sms/fakeSms';
 import type { SmsMessage } from '#fakes/fake-sms/message';
@@ -26,6 +27,8 @@ import type { TestShop } from '../../support/factories';
 export interface Outbox {
   app: TestApp;
   sms: FakeSms;
+  /** Breaks and mends the mail server. */
+  mail: { set(faults: MailFault[]): void };
   senders: Senders;
   owner: Pool;
   /** Puts in what is due and runs tasks until nothing is left to do at this instant. */
@@ -78,6 +81,7 @@ export async function startOutbox(): Promise<Outbox> {
   return {
     app,
     sms,
+    mail: { set: (faults) => void mail.faults.add(faults) },
     senders,
     owner,
     work: () => work(app, senders, owner),
