@@ -6,7 +6,6 @@ import { problemsOfMove, type MoveProblem } from '#shared/domain/moves';
 import { holds, type Role } from '#shared/domain/roles';
 import {
   findMove,
-  hasEnded,
   movesFrom,
   PROGRESS,
   STAGES,
@@ -102,9 +101,4 @@ function noWay(problem: Extract<MoveProblem, { code: 'no_such_move' }>, words: W
 function isBack(from: Stage, to: Stage): boolean {
   const at = PROGRESS.indexOf(from);
   return PROGRESS.includes(to) && at > PROGRESS.indexOf(to) && !findMove(from, to);
-}
-
-/** Whether the stage is one that a tag still hangs in. */
-export function hangs(stage: Stage): boolean {
-  return !hasEnded(stage) || stage === 'collected';
 }
