@@ -5,16 +5,27 @@ import type { FleetView } from '#shared/schemas/booking';
 
 type FleetRow = FleetView['machines'][number] & { accountId: string; crewId: string | null };
 
-/** The machines that the signed-in customer may book: a manager's whole fleet, a crew lead's own. Inside a unit of work. */
+/**
+ * The machines that the signed-in customer may book: a manager's whole fleet, a crew lead's own. Where each is, is said
+ * as the public may know it: moves still in their grace, or undone, are left out. Inside a unit of work.
+ */
 export async function presentFleet(ctx: Ctx): Promise<FleetView> {
   const machines = await rows<FleetRow>(
     `select m.id, m.kind, m.maker, m.model, m.fleet_number as "fleetNumber", m.serial,
        m.account_id as "accountId", m.crew_id as "crewId",
-       (select j.stage from jobs j where j.shop_id = m.shop_id and j.machine_id = m.id
-        and j.stage not in ('collected', 'no_show', 'cancelled', 'disposed')) as "openStage"
+       (select last.to_stage from jobs j
+        join lateral (
+          select e.to_stage from job_events e
+          where e.shop_id = j.shop_id and e.job_id = j.id and e.kind in ('booked', 'moved', 'corrected')
+            and e.visible_at <= $2
+            and not exists (select 1 from job_events u where u.shop_id = e.shop_id and u.undoes_event_id = e.id)
+          order by e.seq desc limit 1
+        ) last on last.to_stage not in ('collected', 'no_show', 'cancelled', 'disposed')
+        where j.shop_id = m.shop_id and j.machine_id = m.id
+        order by j.created_at desc, j.id limit 1) as "openStage"
      from machines m where m.account_id = $1
      order by length(m.fleet_number), m.fleet_number, m.created_at, m.id`,
-    [ctx.actor?.accountId ?? null],
+    [ctx.actor?.accountId ?? null, ctx.now],
   );
   const own = machines.filter((machine) => mayBookMachine(ctx.actor, machine));
   return { machines: own.map(({ accountId: _account, crewId: _crew, ...machine }) => machine) };

@@ -23,6 +23,8 @@ import {
 } from '../support/jobs';
 import { signedIn, startTestApp, type Client, type TestApp } from '../support/testApp';
 
+type Loose = Record<string, unknown>;
+
 let app: TestApp;
 let shop: TestShop;
 let clients: Record<'counter' | 'mechanic' | 'owner', Client>;
@@ -50,7 +52,7 @@ async function jobAt(stage: Stage, outcome: Outcome | null = null): Promise<stri
 }
 
 /** Every move of the product's table that asks for a line, with what it asks for. */
-const GUARDED: [from: Stage, to: Stage, more: object, guards: string[]][] = [
+const GUARDED: [from: Stage, to: Stage, more: Loose, guards: string[]][] = [
   ['checked_in', 'diagnosis', {}, ['walk_round']],
   ['diagnosis', 'repair', {}, ['approval']],
   ['awaiting_approval', 'repair', {}, ['approval']],
@@ -65,7 +67,7 @@ const GUARDED: [from: Stage, to: Stage, more: object, guards: string[]][] = [
   ['ready', 'collected', {}, ['hand_over', 'who_may_collect', 'paid']],
   ['ready', 'disposed', {}, ['disposal_letters']],
 ];
-const SUMS: Record<string, object> = { paid: { amountCents: 5000 }, answer_attempts: { amountCents: 0 } };
+const SUMS: Record<string, Loose> = { paid: { amountCents: 5000 }, answer_attempts: { amountCents: 0 } };
 const outcomeAt = (stage: Stage): Outcome | null => (stage === 'ready' ? 'repaired' : null);
 
 describe.each(GUARDED)('%s to %s', (from, to, more, guards) => {
@@ -105,7 +107,7 @@ describe('who goes on without', () => {
     guard: string,
     from: Stage,
     to: Stage,
-    more: object,
+    more: Loose,
     status: number,
   ][] = [
     ['counter', 'walk_round', 'checked_in', 'diagnosis', {}, 200],
@@ -282,7 +284,7 @@ describe('two at once', () => {
 });
 
 describe('check-in', () => {
-  const checkIn = (tag: string, changes: object, more: object = {}) =>
+  const checkIn = (tag: string, changes: object, more: Loose = {}) =>
     postMove(clients.counter, tag, 'checked_in', { checkIn: { ...atGate, ...changes }, ...more });
 
   test('asks who brought it, and why it was not made safe', async () => {
