@@ -178,6 +178,7 @@ function overrides(p: Palette): GlobalThemeOverrides {
     },
     Tabs: { barColor: p.ink, tabFontWeightActive: '900' },
     Dialog: { borderRadius: '2px' },
+    Message: { border: `2px solid ${p.ink}`, borderRadius: '2px', fontSize: '16px' },
     Drawer: { borderRadius: '2px' },
   };
 }
