@@ -1,5 +1,6 @@
 import { expect, type Locator, type Page } from '@playwright/test';
 import { shop } from './addresses';
+import { shopNow } from './clock';
 import type { newCustomer } from './people';
 import { asTyped } from './people';
 
@@ -77,15 +78,16 @@ const BY_DAY = /, (9:00 am|11:00 am|1:30 pm|3:30 pm) Free$/;
  */
 export async function chooseTime(page: Page): Promise<Date> {
   const times = page.getByRole('radiogroup', { name: 'When?' });
-  await expect(times.getByRole('radio').first()).toBeAttached();
-  const today = await times.getByRole('radio').first().inputValue();
+  await expect(times.getByText(/^(Free|Full)$/).first()).toBeVisible();
+  // A phone shows one day at a time.
   const days = page.getByRole('group', { name: 'Day', exact: true }).getByRole('button');
   if ((await days.count()) > 0) await days.nth(1).click();
+  const today = (await shopNow()).toISOString().slice(0, 10);
   const offered = times.getByRole('radio', { name: BY_DAY });
   const values = await offered.evaluateAll((radios) =>
     radios.map((radio) => (radio as HTMLInputElement).value),
   );
-  const index = values.findIndex((at) => at.slice(0, 10) > today.slice(0, 10));
+  const index = values.findIndex((at) => at.slice(0, 10) > today);
   await offered.nth(index).check();
   const at = new Date(values[index] ?? '');
   await expect(page.getByRole('radio', { name: 'Your time' })).toHaveValue(values[index] ?? '');
