@@ -2,6 +2,7 @@
 import { withShop } from '#server/lib/db';
 import { createPasswordLink } from '#server/lib/passwordLinks';
 import { newId } from '#server/lib/ids';
+import { unsubscribeToken } from '#server/messages/unsubscribe';
 import { addPerson } from './factories';
 import type { House } from './everybody';
 import { atGate, bookBody, bookJob, bookJobs, bringTo, newKey, sheetOf } from './jobs';
@@ -36,7 +37,12 @@ async function tagInShop(app: TestApp, house: House): Promise<string> {
 
 /** A manager whom only this request is about, with a phone. */
 function freshPerson(app: TestApp, { shop }: House) {
-  const fields = { name: 'Wanda', phone: shop.nextPhone(), accountId: shop.account.id };
+  const fields = {
+    name: 'Wanda',
+    phone: shop.nextPhone(),
+    email: 'wanda@example.com',
+    accountId: shop.account.id,
+  };
   return withShop(shop.id, () => addPerson(app, shop.id, ['manager'], fields));
 }
 
@@ -131,12 +137,24 @@ export const SAMPLES: Record<string, Sample> = {
     path: () => '/api/csp-reports',
     body: () => ({ 'csp-report': { 'document-uri': 'http://127.0.0.1/', 'blocked-uri': 'inline' } }),
   },
+  'GET /api/u/:token': { path: (_slug, id) => `/api/u/${id}`, subject: freshUnsubscribeToken },
+  'POST /u/:token': { path: (_slug, id) => `/u/${id}`, subject: freshUnsubscribeToken },
+  // Sent by a browser, so without the provider's signature.
+  'POST /hooks/sms/inbound': { path: () => '/hooks/sms/inbound' },
+  'POST /hooks/sms/status/:shopId/:messageId/:attempt': {
+    path: () => `/hooks/sms/status/${newId()}/${newId()}/1`,
+  },
   'GET /healthz': { path: () => '/healthz' },
 };
 
 async function freshPasswordLink(app: TestApp, house: House): Promise<string> {
   const { id } = await freshPerson(app, house);
   return withShop(house.shop.id, () => createPasswordLink(house.shop.id, id, app.clock.now()));
+}
+
+async function freshUnsubscribeToken(app: TestApp, house: House): Promise<string> {
+  const { id } = await freshPerson(app, house);
+  return unsubscribeToken(app.env, house.shop.id, id);
 }
 
 /** The body of a guest's booking, whose phone has just been proved. */
