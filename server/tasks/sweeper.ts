@@ -10,7 +10,7 @@ import { IS_DEAD } from '#server/messages/liveWorkers';
 
 const BATCH = 500;
 /** A task that has not been heard of for this long is taken to be lost. */
-const REQUEUE_AFTER_MS = 30_000;
+const REQUEUE_AFTER_MS = 20_000;
 
 /**
  * Due: waiting texts whose turn it is, texts to be looked for, and texts left behind by a dead worker. `now` is the
