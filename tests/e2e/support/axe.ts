@@ -10,7 +10,7 @@ const WCAG = ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa'];
  */
 async function unroll(page: Page): Promise<() => Promise<void>> {
   const size = page.viewportSize();
-  if (!size) return async () => undefined;
+  if (!size) return () => Promise.resolve();
   const height = await page.evaluate(() => document.documentElement.scrollHeight);
   await page.setViewportSize({ ...size, height: Math.max(size.height, height) });
   return () => page.setViewportSize(size);
