@@ -107,6 +107,16 @@ describe('checking a machine in', () => {
     expect(floor.text()).toContain('Moved to Checked in.');
   });
 
+  it('keeps "Someone else" chosen while the name is still to be typed', async () => {
+    await open({ visits: [buildVisit(expected())] }, ['counter']);
+    await checkIn();
+    await floor.fill('Dana Ruiz', 'x');
+    await floor.fill('Someone else', 'x');
+    expect(floor.field('Someone else').checked).toBe(true);
+    expect(floor.field('Dana Ruiz').checked).toBe(false);
+    expect(floor.field('Name, if someone else').value).toBe('');
+  });
+
   it('takes a name in place of a person, and a tick left open with a note', async () => {
     const job = expected();
     await open({ visits: [buildVisit(job)] }, ['counter'], {
