@@ -10,6 +10,7 @@ const STATUS: Record<ErrorCode, number> = {
   too_late: 409,
   times_full: 409,
   machine_already_booked: 409,
+  machine_has_open_job: 409,
   code_wrong: 400,
   code_expired: 400,
   which_person: 409,

@@ -12,6 +12,7 @@ export const ERROR_CODES = [
   'too_late',
   'times_full',
   'machine_already_booked',
+  'machine_has_open_job',
   'code_wrong',
   'code_expired',
   'which_person',

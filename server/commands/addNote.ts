@@ -1,4 +1,4 @@
-import { actorOf } from './appendJobEvent';
+import { signedInActor } from './appendJobEvent';
 import type { Ctx } from '#server/lib/context';
 import { withShop } from '#server/lib/db';
 import { newId } from '#server/lib/ids';
@@ -13,7 +13,7 @@ export interface NoteInput {
 
 /** Adds a note that only the shop reads. */
 export async function addNote(ctx: Ctx, { jobId, body, key }: NoteInput) {
-  const { personId, name } = actorOf(ctx);
+  const { personId, name } = signedInActor(ctx);
   return withShop(ctx.shopId, () =>
     once(ctx, { key, act: `note ${jobId}`, body }, async () => {
       const note = { id: newId(), jobId, body, at: ctx.now, personId, byName: name };

@@ -19,7 +19,7 @@ export async function appendJobEvent(ctx: Ctx, job: Job, facts: Facts): Promise<
     'select coalesce(max(seq), 0) as seq from job_events where job_id = $1',
     [job.id],
   );
-  const actor = actorOf(ctx);
+  const actor = signedInActor(ctx);
   return JobEvent.create({
     shopId: ctx.shopId,
     id: newId(),
@@ -33,7 +33,7 @@ export async function appendJobEvent(ctx: Ctx, job: Job, facts: Facts): Promise<
 }
 
 /** Who acts, where only somebody signed in can. */
-export function actorOf(ctx: Ctx): Actor {
+export function signedInActor(ctx: Ctx): Actor {
   if (!ctx.actor) throw new AppError('unauthenticated');
   return ctx.actor;
 }

@@ -2,17 +2,17 @@
  * Books a drop-off: the visit, a job and a tag for each machine, the places of the half-day, the link and the
  * notices, all or nothing.
  */
-import { AppError } from '#server/errors';
 import { announceBooked } from '#server/messages/announce';
-import { toldByBooking } from '#server/messages/recipients';
+import { reachOfOne } from '#server/messages/recipients';
 import { hangNewTag, newStubCode } from './codes';
 import { useCode, type ProvedPhone } from './checkCode';
 import { bookerOf } from './booker';
 import { bookedMachines, type BookedMachine } from './bookedMachines';
+import { oneOpenJob } from './oneOpenJob';
 import { recordConsent } from './recordConsent';
 import { refuseTime, takePlaces } from './places';
 import type { Ctx } from '#server/lib/context';
-import { constraintOf, withShop } from '#server/lib/db';
+import { withShop } from '#server/lib/db';
 import { newId } from '#server/lib/ids';
 import { once, type KeyedRequest } from '#server/lib/idempotency';
 import { createStubLink, stubPathOf } from '#server/lib/links';
@@ -30,19 +30,15 @@ export interface BookInput {
 }
 
 /**
+ * Books the visit once per key.
  * @throws AppError times_full, machine_already_booked, which_person, or invalid by field
  */
 export async function bookVisit(ctx: Ctx, input: BookInput): Promise<BookAnswer> {
   const { shop, body, key } = input;
-  try {
-    const kept = await withShop(shop.id, () => once(ctx, keyedBooking(body, key), () => book(ctx, input)));
-    return withStubPath(ctx, kept);
-  } catch (error) {
-    if (constraintOf(error) === 'jobs_one_open_per_machine') {
-      throw new AppError('machine_already_booked', { cause: error });
-    }
-    throw error;
-  }
+  const kept = await oneOpenJob('machine_already_booked', () =>
+    withShop(shop.id, () => once(ctx, keyedBooking(body, key), () => book(ctx, input))),
+  );
+  return withStubPath(ctx, kept);
 }
 
 /** A booking's answer as it is kept for a second try: by the id of its link, whose address is a secret. */
@@ -81,13 +77,14 @@ async function book(ctx: Ctx, { shop, body, proved }: BookInput): Promise<KeptBo
     details: { jobs: jobs.map((job) => job.tag) },
   });
   await announceBooked(ctx, { visitEvent, visit });
+  const { text, email } = await reachOfOne(booker);
   return {
     visitId: visit.id,
     stubCode: visit.stubCode,
     linkId: await createStubLink(ctx, { visitId: visit.id, personId: booker.id, purpose: 'screen' }),
     arrivesAt: body.arrivesAt,
     jobs,
-    toldBy: await toldByBooking(ctx, booker),
+    toldBy: { text, email },
   };
 }
 

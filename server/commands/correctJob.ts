@@ -1,11 +1,13 @@
 import { AppError, fieldError } from '#server/errors';
 import { appendJobEvent } from './appendJobEvent';
+import { takeBackCheckIn } from './checkInJob';
 import { lockJob, refuseIfMoved } from './loadJob';
+import { oneOpenJob } from './oneOpenJob';
 import { retakePlace } from './places';
 import { announceCorrected } from '#server/messages/announce';
 import { withdrawNotices } from '#server/messages/withdraw';
 import type { Ctx } from '#server/lib/context';
-import { constraintOf, withShop } from '#server/lib/db';
+import { withShop } from '#server/lib/db';
 import { once } from '#server/lib/idempotency';
 import { settingsOf, unitShopOf } from '#server/lib/shops';
 import { Visit, VisitEvent, type Job, type JobEvent } from '#server/models/index';
@@ -24,18 +26,14 @@ export interface CorrectInput {
 /**
  * Puts a job back to an earlier stage, with a reason. Withdraws what has not gone, and tells those who were already
  * told when asked to.
- * @throws AppError moved_meanwhile, forbidden, machine_already_booked, or invalid by field
+ * @throws AppError moved_meanwhile, forbidden, machine_has_open_job, or invalid by field
  */
 export async function correctJob(ctx: Ctx, { jobId, body, key }: CorrectInput): Promise<MoveAnswer> {
-  try {
-    return await withShop(ctx.shopId, () =>
+  return oneOpenJob('machine_has_open_job', () =>
+    withShop(ctx.shopId, () =>
       once(ctx, { key, act: `correct ${jobId}`, body }, () => correct(ctx, jobId, body)),
-    );
-  } catch (error) {
-    if (constraintOf(error) === 'jobs_one_open_per_machine')
-      throw new AppError('machine_already_booked', { cause: error });
-    throw error;
-  }
+    ),
+  );
 }
 
 async function correct(ctx: Ctx, jobId: string, body: CorrectBody): Promise<MoveAnswer> {
@@ -57,6 +55,7 @@ async function correct(ctx: Ctx, jobId: string, body: CorrectBody): Promise<Move
     outcome: back?.outcome ?? null,
     partsReason: back?.partsReason ?? null,
     reason: body.reason,
+    details: { takenBack: wrong.map(({ id }) => id) },
     visibleAt: new Date(ctx.now.getTime() + graceSeconds * 1000),
   });
   await job.update({
@@ -66,6 +65,8 @@ async function correct(ctx: Ctx, jobId: string, body: CorrectBody): Promise<Move
     partsReason: event.partsReason,
     version: job.version + 1,
   });
+  const checkIn = wrong.find((taken) => taken.toStage === 'checked_in');
+  if (checkIn) await takeBackCheckIn(ctx, job, checkIn);
   if (wasCancelled && job.halfDayId) await retakePlace(ctx, job.halfDayId, body.reason);
   await tellAgain(ctx, job, event, wrong, body.tell);
   return presentMove(ctx, job, event);

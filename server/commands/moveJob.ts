@@ -1,7 +1,8 @@
 /** Moves a job to another stage: the rule, the signed lines, the event, the places and the notices, all or nothing. */
-import { appendJobEvent, actorOf } from './appendJobEvent';
+import { appendJobEvent, signedInActor } from './appendJobEvent';
 import { checkInJob } from './checkInJob';
 import { lockJob, refuseIfMoved } from './loadJob';
+import { oneOpenJob } from './oneOpenJob';
 import { givePlaceBack } from './places';
 import { refuseMove } from './refuseMove';
 import { announceCancelled, announceMove } from '#server/messages/announce';
@@ -22,11 +23,12 @@ export interface MoveInput {
 }
 
 /**
- * @throws AppError moved_meanwhile, move_refused, forbidden, or invalid by field
+ * Moves a job once per key.
+ * @throws AppError moved_meanwhile, move_refused, forbidden, machine_has_open_job, or invalid by field
  */
 export async function moveJob(ctx: Ctx, { jobId, body, key }: MoveInput): Promise<MoveAnswer> {
-  return withShop(ctx.shopId, () =>
-    once(ctx, { key, act: `move ${jobId}`, body }, () => move(ctx, jobId, body)),
+  return oneOpenJob('machine_has_open_job', () =>
+    withShop(ctx.shopId, () => once(ctx, { key, act: `move ${jobId}`, body }, () => move(ctx, jobId, body))),
   );
 }
 
@@ -34,7 +36,7 @@ async function move(ctx: Ctx, jobId: string, body: MoveBody): Promise<MoveAnswer
   const job = await lockJob(jobId);
   await refuseIfMoved(job, body.version);
   const settings = await settingsOf(ctx.shopId);
-  const { roles } = actorOf(ctx);
+  const { roles } = signedInActor(ctx);
   const intent = { ...body, from: job.stage, roles, unpaidLimitCents: settings.unpaidLimitCents };
   refuseMove(problemsOfMove(intent), body.lines);
   const event = await appendJobEvent(ctx, job, {
@@ -66,13 +68,15 @@ async function applyMove(ctx: Ctx, job: Job, event: JobEvent, body: MoveBody): P
   });
   if (body.checkIn) await checkInJob(ctx, job, event, body.checkIn);
   if (body.to === 'cancelled' && job.halfDayId) await givePlaceBack(job.halfDayId);
-  const by = { personId: actorOf(ctx).personId, byName: actorOf(ctx).name, at: ctx.now };
+  const { personId, name: byName } = signedInActor(ctx);
+  const by = { personId, byName, at: ctx.now };
   for (const { guard, mode, how, leftOut, why, amountCents = null } of body.lines) {
     const line = { guard, mode, how, leftOut, why, amountCents, ...by };
     await SignedLine.create({ shopId: ctx.shopId, id: newId(), jobId: job.id, eventId: event.id, ...line });
   }
-  if (body.note)
+  if (body.note) {
     await JobNote.create({ shopId: ctx.shopId, id: newId(), jobId: job.id, body: body.note, ...by });
+  }
 }
 
 async function announce(ctx: Ctx, job: Job, event: JobEvent): Promise<void> {

@@ -8,10 +8,12 @@ const REFUSED: readonly MoveProblem['code'][] = ['no_such_move', 'outcome_not_fr
 export function refuseMove(problems: MoveProblem[], lines: readonly LineInput[]): void {
   if (problems.length === 0) return;
   const details = { problems };
-  if (problems.some((problem) => FORBIDDEN.includes(problem.code)))
+  if (problems.some((problem) => FORBIDDEN.includes(problem.code))) {
     throw new AppError('forbidden', { details });
-  if (problems.some((problem) => REFUSED.includes(problem.code)))
+  }
+  if (problems.some((problem) => REFUSED.includes(problem.code))) {
     throw new AppError('move_refused', { details });
+  }
   throw new AppError('invalid', { details, fields: problems.map((problem) => fieldOf(problem, lines)) });
 }
 

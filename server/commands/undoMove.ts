@@ -1,6 +1,8 @@
 import { AppError } from '#server/errors';
-import { actorOf, appendJobEvent } from './appendJobEvent';
+import { signedInActor, appendJobEvent } from './appendJobEvent';
+import { takeBackCheckIn } from './checkInJob';
 import { lockJob } from './loadJob';
+import { oneOpenJob } from './oneOpenJob';
 import { retakePlace } from './places';
 import { withdrawNotices } from '#server/messages/withdraw';
 import type { Ctx } from '#server/lib/context';
@@ -20,11 +22,14 @@ export interface UndoInput {
 
 /**
  * Takes back the latest standing move while its grace lasts, before any customer heard of it.
- * @throws AppError too_late when the grace has ended or the move is no longer the latest; forbidden
+ * @throws AppError too_late when the grace has ended or the move is no longer the latest; forbidden;
+ * machine_has_open_job when a cancelled machine has been booked anew
  */
 export async function undoMove(ctx: Ctx, { jobId, eventId, key }: UndoInput): Promise<MoveAnswer> {
-  return withShop(ctx.shopId, () =>
-    once(ctx, { key, act: `undo ${jobId}`, body: eventId }, () => undo(ctx, jobId, eventId)),
+  return oneOpenJob('machine_has_open_job', () =>
+    withShop(ctx.shopId, () =>
+      once(ctx, { key, act: `undo ${jobId}`, body: eventId }, () => undo(ctx, jobId, eventId)),
+    ),
   );
 }
 
@@ -37,7 +42,9 @@ async function undo(ctx: Ctx, jobId: string, eventId: string): Promise<MoveAnswe
     throw new AppError('too_late');
   }
   const { fromStage, toStage } = latest;
-  if (!fromStage || !toStage || !mayUndo(actorOf(ctx), fromStage, toStage)) throw new AppError('forbidden');
+  if (!fromStage || !toStage || !mayUndo(signedInActor(ctx), fromStage, toStage)) {
+    throw new AppError('forbidden');
+  }
   const event = await appendJobEvent(ctx, job, {
     kind: 'undone',
     fromStage: toStage,
@@ -45,7 +52,9 @@ async function undo(ctx: Ctx, jobId: string, eventId: string): Promise<MoveAnswe
     undoesEventId: latest.id,
     visibleAt: ctx.now,
   });
-  await withdrawNotices(ctx, await eventIdsOf(latest));
+  const { told } = await withdrawNotices(ctx, await eventIdsOf(latest));
+  // While this waited for the message's lock the grace may have ended: whoever has heard cannot be made to unhear.
+  if (told.length > 0) throw new AppError('too_late');
   await restore(ctx, job, latest, before);
   return presentMove(ctx, job, event);
 }
@@ -63,10 +72,9 @@ async function restore(ctx: Ctx, job: Job, latest: JobEvent, before: JobEvent): 
     outcome: before.outcome,
     partsReason: before.partsReason,
     version: job.version + 1,
-    ...(latest.toStage === 'checked_in'
-      ? { broughtByPersonId: null, broughtByName: '', leftWithIt: '' }
-      : {}),
   });
-  if (latest.toStage === 'cancelled' && job.halfDayId)
+  if (latest.toStage === 'checked_in') await takeBackCheckIn(ctx, job, latest);
+  if (latest.toStage === 'cancelled' && job.halfDayId) {
     await retakePlace(ctx, job.halfDayId, 'a cancel was undone');
+  }
 }

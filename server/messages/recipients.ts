@@ -1,6 +1,5 @@
 /** Who hears of what, and by which way they can be reached. Inside a unit of work. */
 import { Op } from 'sequelize';
-import type { Ctx } from '#server/lib/context';
 import { rows } from '#server/lib/db';
 import { OptOut, Person, type Visit } from '#server/models/index';
 
@@ -76,10 +75,4 @@ async function consenting(personIds: string[]): Promise<Set<string>> {
   return new Set(
     latest.filter(({ kind }) => kind === 'given').map(({ personId, phone }) => `${personId} ${phone}`),
   );
-}
-
-/** Whether a booking is told by text, by e-mail or both, for the page that confirms it. */
-export async function toldByBooking(_ctx: Ctx, booker: Person): Promise<{ text: boolean; email: boolean }> {
-  const { text, email } = await reachOfOne(booker);
-  return { text, email };
 }

@@ -10,7 +10,7 @@ const event = (
   visible: number,
   more: Partial<TimedEvent> = {},
 ): TimedEvent => ({
-  ...{ id, kind: 'moved', toStage, undoesEventId: null, visibleAt: minute(visible) },
+  ...{ id, kind: 'moved', toStage, undoesEventId: null, at: minute(visible - 1), visibleAt: minute(visible) },
   ...more,
 });
 const booked = event('booked', 'booked', 0, { kind: 'booked' });
@@ -82,6 +82,47 @@ describe('a notice about a job', () => {
       isReady,
       [booked, here, ready, event('undo', 'test_run', 20, { kind: 'undone', undoesEventId: 'ready' })],
       'withdrawn',
+    ],
+    [
+      'ready stands again when a later step is corrected back to it',
+      isReady,
+      [
+        booked,
+        here,
+        ready,
+        event('gone', 'collected', 22),
+        event('back', 'ready', 25, { kind: 'corrected' }),
+      ],
+      'stands',
+    ],
+    [
+      'ready waits for the correction that puts it back',
+      isReady,
+      [
+        booked,
+        here,
+        ready,
+        event('gone', 'collected', 22),
+        event('back', 'ready', 31, { kind: 'corrected', at: minute(29) }),
+      ],
+      { waitsUntil: minute(31) },
+    ],
+    [
+      'ready is overtaken by a correction to before it',
+      isReady,
+      [booked, here, ready, event('back', 'checked_in', 25, { kind: 'corrected' })],
+      'overtaken',
+    ],
+    [
+      'checked in stands when ready was corrected within its grace, before anybody saw it',
+      checkedIn,
+      [
+        booked,
+        here,
+        event('ready', 'ready', 29, { at: minute(27) }),
+        event('back', 'checked_in', 31, { kind: 'corrected', at: minute(28) }),
+      ],
+      'stands',
     ],
     [
       'a replaced tag changes nothing',

@@ -2,28 +2,33 @@
  * Whether a notice is still true when its message is about to go. The public reads events from their `visible_at`
  * on; a newer move that is still in its grace makes a notice wait until it is known which of the two holds. Pure.
  */
-import { foldEvents, type EventLike } from '#shared/domain/standing';
+import { foldEvents, standsAt, type EventLike } from '#shared/domain/standing';
 import { IN_SHOP } from '#shared/domain/stages';
 import type { NoticeKind } from '#server/models/Notice';
 
 export interface TimedEvent extends EventLike {
+  at: Date;
   visibleAt: Date;
 }
 
 /** One job's events, as they stand now and as the public may know them. */
 export interface JobState {
   undone: Set<string>;
-  /** The last standing event. */
-  last: TimedEvent | null;
-  /** Standing events that are visible, oldest first. */
+  /** Standing events, oldest first. */
+  standing: TimedEvent[];
+  /** Those of them that the public knows. */
   public: TimedEvent[];
 }
 
 /** Folds a job's events, given in order. */
 export function jobStateAt(events: readonly TimedEvent[], now: Date): JobState {
-  const { standing, undone } = foldEvents(events);
-  const visible = foldEvents(events.filter(({ visibleAt }) => visibleAt <= now));
-  return { undone, last: standing.at(-1) ?? null, public: visible.standing };
+  const { standing, undone, corrected } = foldEvents(events);
+  const isKnown = ({ id, visibleAt }: TimedEvent): boolean => {
+    const correction = corrected.get(id);
+    // What was corrected within its grace has never been seen, as if it had been undone.
+    return visibleAt <= now && !(correction && correction.at < visibleAt);
+  };
+  return { undone, standing, public: foldEvents(events.filter(isKnown)).standing };
 }
 
 export interface NoticeFacts {
@@ -37,9 +42,11 @@ export type Verdict = 'stands' | 'overtaken' | 'withdrawn' | { waitsUntil: Date 
 export function judgeJobNotice({ kind, jobEventId }: NoticeFacts, job: JobState): Verdict {
   if (jobEventId && job.undone.has(jobEventId)) return 'withdrawn';
   if (kind === 'checked_in') return isHereSince(job, jobEventId) ? 'stands' : 'overtaken';
-  if (job.public.at(-1)?.id !== jobEventId) return 'overtaken';
-  const isLast = job.last?.id === jobEventId || job.last === null;
-  return isLast ? 'stands' : { waitsUntil: job.last?.visibleAt ?? new Date(0) };
+  const isSoon = standsAt(job.standing, jobEventId);
+  const isKnown = standsAt(job.public, jobEventId);
+  if (isSoon && isKnown) return 'stands';
+  const last = job.standing.at(-1);
+  return last && (isSoon || isKnown) ? { waitsUntil: last.visibleAt } : 'overtaken';
 }
 
 /** A booking is told as long as the public knows of a machine that is not cancelled. */

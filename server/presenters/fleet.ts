@@ -1,5 +1,6 @@
 import type { Ctx } from '#server/lib/context';
 import { rows } from '#server/lib/db';
+import { EVER_PUBLIC } from '#server/queries/publicEvents';
 import { mayBookMachine } from '#shared/policies/abilities';
 import type { FleetView } from '#shared/schemas/booking';
 
@@ -16,9 +17,7 @@ export async function presentFleet(ctx: Ctx): Promise<FleetView> {
        (select last.to_stage from jobs j
         join lateral (
           select e.to_stage from job_events e
-          where e.shop_id = j.shop_id and e.job_id = j.id and e.kind in ('booked', 'moved', 'corrected')
-            and e.visible_at <= $2
-            and not exists (select 1 from job_events u where u.shop_id = e.shop_id and u.undoes_event_id = e.id)
+          where e.shop_id = j.shop_id and e.job_id = j.id and e.visible_at <= $2 and ${EVER_PUBLIC}
           order by e.seq desc limit 1
         ) last on last.to_stage not in ('collected', 'no_show', 'cancelled', 'disposed')
         where j.shop_id = m.shop_id and j.machine_id = m.id

@@ -76,7 +76,7 @@ function peopleOf(visit: Visit, job: Job): Promise<Person[]> {
   });
 }
 
-/** The present stage's events: a correction would have to tell again whoever was told of them. */
+/** Everything but the booking: whichever of these a correction takes back, whoever was told of it may be told again. */
 async function eventsToTellAgain({ standing }: Standing<JobEvent>): Promise<string[]> {
   const ids = standing.filter((event) => event.kind !== 'booked').map(({ id }) => id);
   const ofVisit = await VisitEvent.findAll({ where: { jobEventId: ids } });

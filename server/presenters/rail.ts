@@ -17,7 +17,7 @@ export async function presentRail(ctx: Ctx): Promise<RailView> {
   const today = DateTime.fromJSDate(ctx.now, { zone: shop.zone }).startOf('day');
   const closures = await closuresFrom(today.toISODate() ?? '');
   const days = workingDays(today, HORIZON, shop.settings.hours, closures);
-  const lastDay = days[BOOKED_DAYS - 1] ?? today;
+  const lastDay = days.slice(0, BOOKED_DAYS).at(-1) ?? today;
   const jobs = await railJobs(lastDay.plus({ days: 1 }).toJSDate(), today.toJSDate());
   return {
     now: ctx.now.toISOString(),

@@ -1,5 +1,6 @@
 /** The public page of a visit, read in one statement: it is what customers open all day long. */
 import { rows } from '#server/lib/db';
+import { EVER_PUBLIC } from './publicEvents';
 import type { StubView } from '#shared/schemas/stub';
 
 interface StubRow {
@@ -7,7 +8,7 @@ interface StubRow {
   view: Omit<StubView, 'now'>;
 }
 
-// The public reads an event only when it is visible and not undone. The present stage is the latest such event's.
+// The public reads an event only when it is visible and not taken back before. The present stage is the latest such event's.
 const STUB = `
   with link as (
     select l.visit_id, l.revoked_at, coalesce(p.language, 'en') as language
@@ -17,8 +18,7 @@ const STUB = `
     select e.*, e.visible_at <= $2 as visible from job_events e
     join jobs j on j.shop_id = e.shop_id and j.id = e.job_id
     join link on link.visit_id = j.visit_id
-    where e.kind in ('booked', 'moved', 'corrected')
-      and not exists (select 1 from job_events u where u.shop_id = e.shop_id and u.undoes_event_id = e.id)
+    where ${EVER_PUBLIC}
   ), machines_of_visit as (
     select j.id, last.at as last_at, last.to_stage as stage,
       json_build_object(

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { foldEvents, takenBack, type EventLike } from './standing';
+import { foldEvents, standsAt, takenBack, type EventLike } from './standing';
 import type { Stage } from './stages';
 
 const event = (
@@ -20,7 +20,7 @@ const corrected = (id: string, to: Stage) => event(id, 'corrected', to);
 
 const fold = (...events: EventLike[]) => {
   const { standing, undone: taken, corrected: wrong } = foldEvents(events);
-  return { standing: standing.map(({ id }) => id), undone: [...taken], corrected: [...wrong] };
+  return { standing: standing.map(({ id }) => id), undone: [...taken], corrected: [...wrong.keys()] };
 };
 
 describe('foldEvents', () => {
@@ -94,5 +94,25 @@ describe('foldEvents', () => {
 describe('takenBack', () => {
   it('is empty where the job stands at the stage already', () => {
     expect(takenBack([booked, moved('1', 'checked_in')], 'checked_in')).toEqual([]);
+  });
+});
+
+describe('standsAt', () => {
+  const stands = (id: string, ...events: EventLike[]) => standsAt(foldEvents(events).standing, id);
+  const way = [booked, moved('1', 'checked_in'), moved('2', 'ready')];
+
+  it('is the last word, and no earlier one', () => {
+    expect([stands('2', ...way), stands('1', ...way), stands('x', ...way)]).toEqual([true, false, false]);
+  });
+
+  it('holds again when corrections put the job back, however many', () => {
+    const back = [...way, moved('3', 'collected'), corrected('c', 'ready')];
+    expect([stands('2', ...back), stands('c', ...back)]).toEqual([true, true]);
+    expect(stands('2', ...back, moved('4', 'collected'), corrected('d', 'ready'))).toBe(true);
+  });
+
+  it('ends with a correction to another stage, or to one where it never stood', () => {
+    expect(stands('2', ...way, corrected('c', 'checked_in'))).toBe(false);
+    expect(stands('b', ...way, corrected('c', 'diagnosis'))).toBe(false);
   });
 });

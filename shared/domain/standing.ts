@@ -15,23 +15,24 @@ export interface Standing<E> {
   /** The events that lead to the present stage, oldest first; the last one says where the job stands. */
   standing: E[];
   undone: Set<string>;
-  /** Moves taken back by a correction. */
-  corrected: Set<string>;
+  /** Moves taken back by a correction, by id, each with the correction that did. */
+  corrected: Map<string, E>;
 }
 
 /** Folds a job's events, given in order. Events that move nothing (a replaced tag) are passed over. */
 export function foldEvents<E extends EventLike>(events: readonly E[]): Standing<E> {
   const standing: E[] = [];
   const undone = new Set<string>();
-  const corrected = new Set<string>();
+  const corrected = new Map<string, E>();
   for (const event of events) {
     if (event.kind === 'undone') {
       const index = standing.findIndex((earlier) => earlier.id === event.undoesEventId);
       if (index >= 0) standing.splice(index, 1);
       if (event.undoesEventId) undone.add(event.undoesEventId);
     } else if (event.kind === 'corrected') {
-      for (const taken of takenBack(standing, event.toStage)) corrected.add(taken.id);
-      standing.length -= takenBack(standing, event.toStage).length;
+      const taken = takenBack(standing, event.toStage);
+      for (const { id } of taken) corrected.set(id, event);
+      standing.length -= taken.length;
       standing.push(event);
     } else if (event.kind === 'booked' || event.kind === 'moved') {
       standing.push(event);
@@ -45,4 +46,16 @@ export function takenBack<E extends EventLike>(standing: readonly E[], stage: St
   const last = standing.findLastIndex((event) => event.toStage === stage);
   // A stage that it never stood at: all but the booking itself.
   return standing.slice(Math.max(last, 0) + 1);
+}
+
+/**
+ * Whether a job stands where that event put it: the event is the last word, or corrections have put the job back to it.
+ */
+export function standsAt<E extends EventLike>(standing: readonly E[], eventId: string | null): boolean {
+  for (const [index, event] of [...standing.entries()].reverse()) {
+    if (event.id === eventId) return true;
+    const isPutBack = event.kind === 'corrected' && standing[index - 1]?.toStage === event.toStage;
+    if (!isPutBack) return false;
+  }
+  return false;
 }

@@ -299,7 +299,7 @@ describe('correct', () => {
     await bookJob(app, shop, { arrivesAt, machines });
     pass(app, 2 * GRACE);
     const answer = await correct(clients.counter, tag, 'booked');
-    expect([answer.status, errorOf(answer).code]).toEqual([409, 'machine_already_booked']);
+    expect([answer.status, errorOf(answer).code]).toEqual([409, 'machine_has_open_job']);
     expect(await halfDayOf(arrivesAt)).toEqual({ taken: 1, over: 0 });
   });
 
