@@ -1,9 +1,10 @@
 /** Phones that want no texts. Our own list is the master, whatever the carrier does. Inside a unit of work. */
 import { Op } from 'sequelize';
 import { AppError } from '#server/errors';
+import { audit } from '#server/lib/audit';
 import type { Ctx } from '#server/lib/context';
 import { newId } from '#server/lib/ids';
-import { AuditEvent, Consent, Message, OptOut, Person } from '#server/models/index';
+import { Consent, Message, OptOut, Person } from '#server/models/index';
 import { turnToEmail } from './fallback';
 import { lockMessage } from './lockMessage';
 
@@ -21,7 +22,7 @@ export async function stopTextsTo(
   if (!(await isOptedOut(phone))) {
     await setOptOut(ctx, phone, true, source);
     await recordConsents(ctx, phone, 'withdrawn', source, wording);
-    await audit(ctx, 'texts.stopped', phone, source);
+    await audit(ctx, 'texts_stopped', { personId: ctx.actor?.personId, details: { phone, source } });
   }
   await turnPendingToEmail(ctx, phone);
 }
@@ -34,7 +35,7 @@ export async function allowTextsTo(ctx: Ctx, phone: string, wording: string): Pr
   if (!(await Consent.findOne({ where: { phone, kind: 'given' } }))) return false;
   await setOptOut(ctx, phone, false, 'text');
   await recordConsents(ctx, phone, 'given', 'text', wording);
-  await audit(ctx, 'texts.allowed', phone, 'text');
+  await audit(ctx, 'texts_allowed', { details: { phone, source: 'text' } });
   return true;
 }
 
@@ -60,7 +61,10 @@ async function setOptOut(ctx: Ctx, phone: string, optedOut: boolean, source: Opt
   else await OptOut.create({ shopId: ctx.shopId, id: newId(), phone, ...row });
 }
 
-/** One row for each person who can be reached under that phone and whose consent this changes. */
+/**
+ * One row for each person who agreed to texts to that phone once. A word from a shared phone speaks for them alone:
+ * nobody is made to agree by what another texts.
+ */
 async function recordConsents(
   ctx: Ctx,
   phone: string,
@@ -68,25 +72,13 @@ async function recordConsents(
   source: string,
   wording: string,
 ): Promise<void> {
-  const people = await Person.findAll({ where: { phone, leftAt: null }, order: ['id'] });
+  const given = await Consent.findAll({ where: { phone, kind: 'given' } });
+  const agreed = given.map(({ personId }) => personId);
+  const people = await Person.findAll({ where: { id: agreed, phone, leftAt: null }, order: ['id'] });
   for (const { id: personId, language } of people) {
     const facts = { personId, phone, kind, wording, language, source, ip: ctx.ip, at: ctx.now };
     await Consent.create({ shopId: ctx.shopId, id: newId(), ...facts });
   }
-}
-
-async function audit(ctx: Ctx, kind: string, phone: string, source: OptOutSource): Promise<void> {
-  const personId = ctx.actor?.personId ?? null;
-  const details = { phone, source };
-  await AuditEvent.create({
-    shopId: ctx.shopId,
-    id: newId(),
-    kind,
-    at: ctx.now,
-    personId,
-    ip: ctx.ip,
-    details,
-  });
 }
 
 async function turnPendingToEmail(ctx: Ctx, phone: string): Promise<void> {

@@ -2,10 +2,10 @@
 import { createHmac, timingSafeEqual } from 'node:crypto';
 import { AppError } from '#server/errors';
 import type { Env } from '#server/env';
+import { audit } from '#server/lib/audit';
 import type { Services } from '#server/lib/context';
 import { withShop } from '#server/lib/db';
-import { newId } from '#server/lib/ids';
-import { AuditEvent, Person, Shop } from '#server/models/index';
+import { Person, Shop } from '#server/models/index';
 
 const ID_BYTES = 16;
 const MAC_BYTES = 16;
@@ -53,8 +53,7 @@ export function unsubscribe(services: Services, token: string): Promise<Unsubscr
     if (before.already) return before;
     const at = services.clock.now();
     await person.update({ emailStoppedAt: at });
-    const kind = 'email.stopped';
-    await AuditEvent.create({ shopId: shop.id, id: newId(), kind, at, personId: person.id });
+    await audit({ shopId: shop.id, now: at, ip: '' }, 'emails_stopped', { personId: person.id });
     return { ...before, already: true };
   });
 }

@@ -5,7 +5,7 @@ import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import { withShop } from '#server/lib/db';
 import { Consent, InboundText, OptOut, Person, TextStatus } from '#server/models/index';
 import type { GateView } from '#shared/schemas/job';
-import { makeShop, type TestShop } from '../support/factories';
+import { addPerson, makeShop, type TestShop } from '../support/factories';
 import { atGate, bookJobs, newMachine, postMove, sheetOf } from '../support/jobs';
 import { pass, signedIn, type Client } from '../support/testApp';
 import { startOutbox, type Outbox } from './support/outbox';
@@ -79,6 +79,22 @@ describe('words that act', () => {
     const row = await withShop(shop.id, () => OptOut.findOne({ where: { phone: stranger } }));
     expect(row?.optedOut).toBe(true);
     expect(outbox.textsTo(stranger).at(-1)?.body).toContain('we have no OK from you for texts');
+  });
+
+  it('START speaks for those who agreed, not for whoever else shares the phone', async () => {
+    const { phone, accountId } = shop.crewLead;
+    const { id: mate } = await withShop(shop.id, () =>
+      addPerson(outbox.app, shop.id, ['crew_lead'], { phone, accountId }),
+    );
+    await say('STOP');
+    await say('START');
+    const kindsOf = (personId: string) =>
+      withShop(shop.id, async () => {
+        const found = await Consent.findAll({ where: { personId }, order: ['at'] });
+        return found.map(({ kind }) => kind);
+      });
+    expect((await kindsOf(shop.crewLead.id)).at(-1)).toBe('given');
+    expect(await kindsOf(mate)).toEqual([]);
   });
 
   it('HELP says who writes, where to call and how to stop', async () => {

@@ -184,7 +184,7 @@ describe('the phone', () => {
     await withShop(shop.id, () => stopTexts(ctxOf(outbox.app, shop.id, person), shop.crewLead.id));
     const [consent] = await withShop(shop.id, () => Consent.findAll({ where: { kind: 'withdrawn' } }));
     expect(consent).toMatchObject({ personId: shop.crewLead.id, source: 'staff' });
-    const event = await withShop(shop.id, () => AuditEvent.findOne({ where: { kind: 'texts.stopped' } }));
+    const event = await withShop(shop.id, () => AuditEvent.findOne({ where: { kind: 'texts_stopped' } }));
     expect(event?.personId).toBe(person.id);
   }
 });
