@@ -22,6 +22,7 @@ import {
   Tag,
   Visit,
 } from '#server/models/index';
+import { actorOf } from '#server/lib/passport';
 import { hashPassword } from '#server/lib/passwords';
 import type { Actor } from '#shared/domain/roles';
 import { drawCode } from '#shared/domain/tagCode';
@@ -76,8 +77,7 @@ async function seedPeople(stage: Stage, demo: DemoShop, passwordHash: string): P
 }
 
 function remember(stage: Stage, key: string, person: Person): void {
-  const { id: personId, name, roles, accountId, crewId } = person;
-  stage.actors.set(key, { shopId: stage.shop.id, personId, name, roles, accountId, crewId });
+  stage.actors.set(key, actorOf(person));
 }
 
 async function seedAccount(stage: Stage, demo: DemoAccount): Promise<void> {
@@ -127,8 +127,9 @@ async function seedPerson(
     createdAt,
   });
   remember(stage, demo.key, person);
-  if (demo.texts)
+  if (demo.texts) {
     await recordConsent(ctxAt(stage, demo.key, createdAt), stage.shop, person, person.language, 'demo');
+  }
 }
 
 async function playVisit(stage: Stage, demo: DemoVisit): Promise<void> {
@@ -153,8 +154,9 @@ async function playVisit(stage: Stage, demo: DemoVisit): Promise<void> {
     },
   });
   const jobIds = await withShop(stage.shop.id, () => jobsInOrder(answer.jobs.map(({ tag }) => tag)));
-  for (const [index, job] of demo.jobs.entries())
+  for (const [index, job] of demo.jobs.entries()) {
     await playJob(stage, demo.by, jobIds[index] ?? '', job.steps);
+  }
 }
 
 async function jobsInOrder(codes: string[]): Promise<string[]> {

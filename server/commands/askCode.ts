@@ -2,12 +2,13 @@ import { AppError } from '#server/errors';
 import type { Ctx } from '#server/lib/context';
 import { run, withShop } from '#server/lib/db';
 import { newId } from '#server/lib/ids';
-import { CODE_LIFE_MS, codeHmac, drawCode, NO_CODE } from '#server/lib/loginCodes';
+import { CODE_LIFE_MS, codeHmac, drawDigits, NO_CODE } from '#server/lib/loginCodes';
 import { limitCodes } from '#server/lib/rateLimits';
 import type { ShopProfile } from '#server/lib/shops';
 import { takeAtLeast } from '#server/lib/steady';
+import { isOptedOut } from '#server/messages/optOut';
 import { sendCodeText } from '#server/messages/sendCode';
-import { LoginCode, OptOut } from '#server/models/index';
+import { LoginCode } from '#server/models/index';
 import { numberToText } from '#server/queries/senderNumber';
 import { peopleOfPhone } from '#server/queries/people';
 import { codeStop } from './codeBudget';
@@ -35,7 +36,7 @@ async function decide(ctx: Ctx, shop: ShopProfile, body: AskCodeBody): Promise<A
   const people = await peopleOfPhone(body.phone);
   const isSent = body.purpose === 'book' || people.length > 0;
   const requestId = newId();
-  const code = drawCode();
+  const code = drawDigits();
   await endOlderCodes(ctx, body.phone);
   const kept = isSent ? codeHmac(ctx.env.CODE_KEY, requestId, code) : NO_CODE;
   const expiresAt = await keep(ctx, body, { requestId, kept });
@@ -55,7 +56,7 @@ async function decide(ctx: Ctx, shop: ShopProfile, body: AskCodeBody): Promise<A
 }
 
 async function refuseOptedOut(shop: ShopProfile, phone: string): Promise<void> {
-  if (!(await OptOut.findOne({ where: { phone, optedOut: true } }))) return;
+  if (!(await isOptedOut(phone))) return;
   const details: OptedOutDetails = {
     shopPhone: shop.settings.phone,
     shopNumberToText: await numberToText(shop.id),

@@ -3,14 +3,11 @@ import type { Ctx } from '#server/lib/context';
 import { run, withShop } from '#server/lib/db';
 import { CODE_CHECKS, codeHmac, fitsCode } from '#server/lib/loginCodes';
 import type { LoginCode } from '#server/models/index';
-import type { Language } from '#shared/domain/when';
 
 /** A phone that its holder has proved, by the request whose code was right. */
 export interface ProvedPhone {
   requestId: string;
   phone: string;
-  language: Language;
-  consent: boolean;
 }
 
 interface CodeProof {
@@ -21,8 +18,6 @@ interface CodeProof {
 
 interface CodeRow {
   phone: string;
-  language: Language;
-  consent: boolean;
   code_hmac: string;
 }
 
@@ -37,8 +32,7 @@ export async function proveCode(ctx: Ctx, proof: CodeProof): Promise<ProvedPhone
   const row = await withShop(ctx.shopId, () => check(ctx, proof, hmac));
   if (!row) throw new AppError('code_expired');
   if (!fitsCode(row.code_hmac, hmac)) throw new AppError('code_wrong');
-  const { phone, language, consent } = row;
-  return { requestId, phone, language, consent };
+  return { requestId, phone: row.phone };
 }
 
 /**
@@ -51,7 +45,7 @@ async function check(ctx: Ctx, proof: CodeProof, hmac: string): Promise<CodeRow 
     `update login_codes set checks = checks + 1
       where id = $1 and purpose = $2 and expires_at > $3 and checks < ${CODE_CHECKS}
         and (used_at is null or purpose = 'book')
-      returning phone, language, consent, code_hmac`,
+      returning phone, code_hmac`,
     [proof.requestId, proof.purpose, ctx.now],
   );
   if (row && fitsCode(row.code_hmac, hmac)) {

@@ -14,12 +14,12 @@ export function stubPathOf({ LINK_KEY }: Pick<Ctx['env'], 'LINK_KEY'>, linkId: s
   return `/t/${linkToken(LINK_KEY, linkId)}`;
 }
 
-/** Makes one person's link to the stub of a visit. @returns its id */
+/** Makes one person's link to the stub of a visit, under an id of its own or a given one. @returns its id */
 export async function createStubLink(
   ctx: Pick<Ctx, 'shopId' | 'now' | 'env'>,
   input: NewLink,
+  id = newId(),
 ): Promise<string> {
-  const id = newId();
   const token = linkToken(ctx.env.LINK_KEY, id);
   const tokenHash = hashToken(token);
   await Link.create({ shopId: ctx.shopId, id, tokenHash, createdAt: ctx.now, ...input });

@@ -6,7 +6,7 @@ export const CODE_LIFE_MS = 10 * 60_000;
 export const CODE_CHECKS = 5;
 
 /** Six digits, each equally likely. */
-export const drawCode = (): string => String(pick(1_000_000)).padStart(6, '0');
+export const drawDigits = (): string => String(pick(1_000_000)).padStart(6, '0');
 
 /** What is kept of a code. It is bound to its request: the same digits of another request do not fit. */
 export function codeHmac(key: string, requestId: string, code: string): string {

@@ -1,14 +1,13 @@
-import { createHash } from 'node:crypto';
 import connectPgSimple from 'connect-pg-simple';
 import expressSession, { type SessionData } from 'express-session';
 import pg from 'pg';
 import type { Services } from './context';
+import { hashToken } from './ids';
 import { asRole, POOLS, run } from './db';
+import { watchPool } from './watchPool';
 
 const PgStore = connectPgSimple(expressSession);
 type Done = (error?: unknown) => void;
-
-const hashed = (sid: string): string => createHash('sha256').update(sid).digest('hex');
 
 /**
  * Sessions in PostgreSQL. The table knows only hashes, so whoever reads it cannot take a session over. A session is
@@ -30,7 +29,7 @@ export class SessionStore extends PgStore {
   }
 
   override get(sid: string, done: (error: unknown, session?: SessionData | null) => void): void {
-    super.get(hashed(sid), done);
+    super.get(hashToken(sid), done);
   }
 
   override regenerate(...[req, done]: Parameters<InstanceType<typeof PgStore>['regenerate']>): void {
@@ -41,9 +40,9 @@ export class SessionStore extends PgStore {
   }
 
   override set(sid: string, session: SessionData, done?: Done): void {
-    if (this.#unborn.delete(sid)) return super.set(hashed(sid), session, done);
+    if (this.#unborn.delete(sid)) return super.set(hashToken(sid), session, done);
     this.#pool
-      .query('update session set sess = $2 where sid = $1', [hashed(sid), JSON.stringify(session)])
+      .query('update session set sess = $2 where sid = $1', [hashToken(sid), JSON.stringify(session)])
       .then(
         () => done?.(),
         (error: unknown) => done?.(error),
@@ -52,7 +51,7 @@ export class SessionStore extends PgStore {
 
   override destroy(sid: string, done?: Done): void {
     this.#unborn.delete(sid);
-    super.destroy(hashed(sid), done);
+    super.destroy(hashToken(sid), done);
   }
 }
 
@@ -64,7 +63,7 @@ export function openSessionPool({ env, log }: Services): pg.Pool {
     application_name: 'benchbell sessions',
     allowExitOnIdle: true,
   });
-  pool.on('error', (error) => log.warn({ err: error }, 'session connection lost'));
+  watchPool(pool, log);
   return pool;
 }
 

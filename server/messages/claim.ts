@@ -4,6 +4,7 @@
  */
 import type { Ctx } from '#server/lib/context';
 import { newId } from '#server/lib/ids';
+import { CODE_LIFE_MS } from '#server/lib/loginCodes';
 import type { Message } from '#server/models/index';
 import { numberToText } from '#server/queries/senderNumber';
 import { isWorkerAlive } from './liveWorkers';
@@ -19,7 +20,6 @@ export const LOOK_AFTER_MS = 15_000;
 const LOOK_LEASE_MS = 30_000;
 /** Nobody could say for this long: it is given up, visibly. */
 const GIVE_UP_MS = 4 * 60 * 60_000;
-const CODE_LIFE_MS = 10 * 60_000;
 const PUT_OFF_MS = 60_000;
 
 /** What the task does next; null: nothing, the world has moved on or the time has not come. */

@@ -1,6 +1,5 @@
 import type { Ctx } from '#server/lib/context';
-import { run } from '#server/lib/db';
-import { hashToken, linkToken } from '#server/lib/ids';
+import { createStubLink, stubPathOf } from '#server/lib/links';
 import { Link, type Message } from '#server/models/index';
 
 /**
@@ -9,19 +8,8 @@ import { Link, type Message } from '#server/models/index';
  */
 export async function messageLink(ctx: Ctx, message: Message): Promise<string> {
   const { id, visitId, personId, channel } = message;
-  const token = linkToken(ctx.env.LINK_KEY, id);
   if (visitId && !(await Link.findByPk(id))) {
-    const tokenHash = hashToken(token);
-    await Link.create({
-      shopId: ctx.shopId,
-      id,
-      visitId,
-      personId,
-      purpose: channel,
-      tokenHash,
-      createdAt: ctx.now,
-    });
-    await run('insert into link_directory (token_hash, shop_id) values ($1, $2)', [tokenHash, ctx.shopId]);
+    await createStubLink(ctx, { visitId, personId, purpose: channel }, id);
   }
-  return `${ctx.env.PUBLIC_URL}/t/${token}`;
+  return `${ctx.env.PUBLIC_URL}${stubPathOf(ctx.env, id)}`;
 }

@@ -1,5 +1,6 @@
 /** What goes over the wire for a claimed message. Inside a unit of work. */
 import type { Ctx } from '#server/lib/context';
+import { CODE_LIFE_MS } from '#server/lib/loginCodes';
 import type { OutgoingMail } from '#server/lib/mail';
 import type { OutgoingText } from '#server/lib/sms';
 import { settingsOf } from '#server/lib/shops';
@@ -9,7 +10,6 @@ import { unsubscribeUrl } from './composeMessage';
 export type Outgoing = { channel: 'text'; text: OutgoingText } | { channel: 'email'; mail: OutgoingMail };
 
 const STATUS_TEXT_LIFE_SECONDS = 14_400;
-const CODE_LIFE_SECONDS = 600;
 
 /** @param from the shop's number, for a text */
 export async function outgoingOf(ctx: Ctx, message: Message, from: string): Promise<Outgoing> {
@@ -22,7 +22,7 @@ export async function outgoingOf(ctx: Ctx, message: Message, from: string): Prom
       to,
       body: body ?? '',
       statusCallback: `${ctx.env.PUBLIC_URL}/hooks/sms/status/${ctx.shopId}/${id}/${attempt}`,
-      validitySeconds: kind === 'code' ? CODE_LIFE_SECONDS : STATUS_TEXT_LIFE_SECONDS,
+      validitySeconds: kind === 'code' ? CODE_LIFE_MS / 1000 : STATUS_TEXT_LIFE_SECONDS,
     },
   };
 }

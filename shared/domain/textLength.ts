@@ -46,8 +46,9 @@ export function plainText(text: string): string {
 /** Counts a text as the network will. */
 export function textLength(text: string): TextLength {
   const septets = gsmSeptets(text);
-  if (septets !== null)
+  if (septets !== null) {
     return { encoding: 'GSM-7', units: septets, segments: segments(text, septets, 160, 153, septetsOf) };
+  }
   return {
     encoding: 'UCS-2',
     units: text.length,

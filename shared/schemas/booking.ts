@@ -50,7 +50,7 @@ export const BookBody = z
     /** Anything the shop should know about the visit as a whole. */
     note: optionalText(500),
     language,
-    /** Whether the person agreed to texts about the machines; without it, notices go by e-mail alone. */
+    /** Whether the person agrees to texts about the machines, with this booking; what was agreed earlier stays. */
     textConsent: z.boolean(),
     guest: BookingGuest.optional(),
   })

@@ -1,6 +1,6 @@
 /** Sign-in, sessions, one-time codes and passwords. */
 import { z } from 'zod';
-import { code as _code, email, language, phone, uuid } from './fields';
+import { email, language, phone, uuid } from './fields';
 import type { Role } from '#shared/domain/roles';
 import type { Language } from '#shared/domain/when';
 import type { Ability } from '#shared/policies/abilities';
@@ -13,7 +13,7 @@ export const AskCodeBody = z.strictObject({
   phone,
   purpose: z.enum(['book', 'sign_in']),
   language,
-  /** Booking: the wording of consent that the person ticked, by its version; null when not ticked. */
+  /** Booking: whether the box about texts was ticked when the code was asked for. */
   consent: z.boolean().default(false),
 });
 export type AskCodeBody = z.infer<typeof AskCodeBody>;
