@@ -5,7 +5,7 @@ import { unitShopOf } from '#server/lib/shops';
 import { unansweredTexts } from '#server/messages/presentTexts';
 import { jobsArriving, type JobRow } from '#server/queries/railJobs';
 import type { GateJob, GateView, GateVisit } from '#shared/schemas/job';
-import { presentMachine, presentUndo } from './railJob';
+import { presentAbilities, presentMachine, presentUndo } from './railJob';
 
 interface VisitRow {
   id: string;
@@ -83,5 +83,6 @@ function presentGateJob(ctx: Ctx, row: JobRow): GateJob {
     machine: presentMachine(row),
     checkedInAt,
     undo: presentUndo(row, ctx.actor, ctx.now),
+    abilities: presentAbilities(row, ctx.actor, ctx.now),
   };
 }

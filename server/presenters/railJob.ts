@@ -1,6 +1,7 @@
 import type { JobRow } from '#server/queries/railJobs';
 import type { Actor } from '#shared/domain/roles';
-import { mayUndo } from '#shared/policies/abilities';
+import { isSameDay } from '#shared/domain/hours';
+import { abilitiesOnJob, mayUndo, type Ability } from '#shared/policies/abilities';
 import type { MachineView, RailJob } from '#shared/schemas/job';
 
 /** A tag as staff see it. */
@@ -20,9 +21,11 @@ export function presentRailJob(row: JobRow, actor: Actor | null, now: Date): Rai
     arrivesAt: row.arrives_at.toISOString(),
     rush: row.rush,
     undo: presentUndo(row, actor, now),
+    abilities: presentAbilities(row, actor, now),
   };
 }
 
+/** The machine of a job's row. */
 export function presentMachine(row: JobRow): MachineView {
   const { machine_id: id, kind, maker, model, fleet_number: fleetNumber, serial } = row;
   return { id, kind, maker, model, fleetNumber, serial };
@@ -33,4 +36,13 @@ export function presentUndo(row: JobRow, actor: Actor | null, now: Date): RailJo
   const { event_kind: kind, event_from: from, event_to: to, event_visible_at: until } = row;
   if (kind !== 'moved' || !from || now >= until || !actor || !mayUndo(actor, from, to)) return null;
   return { eventId: row.event_id, until: until.toISOString() };
+}
+
+/** What the reader may do with the job as it stands. */
+export function presentAbilities(
+  { stage, stage_since, zone }: JobRow,
+  actor: Actor | null,
+  now: Date,
+): Ability[] {
+  return actor ? abilitiesOnJob(actor, stage, isSameDay(stage_since, now, zone)) : [];
 }

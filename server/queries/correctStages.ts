@@ -1,6 +1,6 @@
-import { DateTime } from 'luxon';
 import type { Ctx } from '#server/lib/context';
 import type { Job, JobEvent } from '#server/models/index';
+import { isSameDay } from '#shared/domain/hours';
 import { PROGRESS, type Stage } from '#shared/domain/stages';
 import { correctableTo } from '#shared/policies/abilities';
 
@@ -14,8 +14,7 @@ const WITH_FACT: readonly Stage[] = ['ready', 'awaiting_parts'];
  */
 export function correctStages(ctx: Ctx, job: Job, standing: readonly JobEvent[], zone: string): Stage[] {
   if (!ctx.actor) return [];
-  const day = (at: Date) => DateTime.fromJSDate(at, { zone }).toISODate();
-  const before = correctableTo(ctx.actor, job.stage, day(job.stageSince) === day(ctx.now));
+  const before = correctableTo(ctx.actor, job.stage, isSameDay(job.stageSince, ctx.now, zone));
   if (before.length === 0) return [];
   const stood = new Set(standing.map((event) => event.toStage));
   return PROGRESS.filter(

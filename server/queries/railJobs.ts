@@ -16,6 +16,7 @@ export interface JobRow {
   words: string;
   complaint: string;
   visit_id: string;
+  zone: string;
   arrives_at: Date;
   machine_id: string;
   kind: MachineKind;
@@ -35,12 +36,13 @@ export interface JobRow {
 
 const JOBS = `
   select j.id, t.code as tag, j.version, j.stage, j.stage_since, j.outcome, j.parts_reason, j.rush, j.words,
-    k.label_en as complaint, j.visit_id, v.arrives_at,
+    k.label_en as complaint, j.visit_id, v.arrives_at, z.zone,
     m.id as machine_id, m.kind, m.maker, m.model, m.fleet_number, m.serial,
     a.id as account_id, a.name as account_name,
     e.id as event_id, e.kind as event_kind, e.from_stage as event_from, e.to_stage as event_to,
     e.visible_at as event_visible_at
   from jobs j
+  join shops z on z.id = j.shop_id
   join visits v on v.shop_id = j.shop_id and v.id = j.visit_id
   join machines m on m.shop_id = j.shop_id and m.id = j.machine_id
   join accounts a on a.shop_id = j.shop_id and a.id = j.owner_account_id

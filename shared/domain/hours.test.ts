@@ -6,6 +6,7 @@ import {
   halfOf,
   instantOf,
   isOpenAt,
+  isSameDay,
   isWorkingDay,
   workingDays,
   type WeekHours,
@@ -190,5 +191,20 @@ describe('quiet hours', () => {
       }),
       { numRuns: 150 },
     );
+  });
+});
+
+describe('isSameDay', () => {
+  const denver = (one: string, other: string) => isSameDay(new Date(one), new Date(other), 'America/Denver');
+
+  it('goes by the shop’s calendar, not by that of Greenwich', () => {
+    expect(denver('2026-12-03T16:00:00Z', '2026-12-04T06:59:00Z')).toBe(true);
+    expect(denver('2026-12-04T06:59:00Z', '2026-12-04T07:00:00Z')).toBe(false);
+  });
+
+  it('holds on the days of 23 and 25 hours', () => {
+    expect(denver('2026-03-08T07:00:00Z', '2026-03-09T05:59:00Z')).toBe(true);
+    expect(denver('2026-11-01T06:00:00Z', '2026-11-02T06:59:00Z')).toBe(true);
+    expect(denver('2026-03-08T07:00:00Z', '2026-03-09T06:00:00Z')).toBe(false);
   });
 });

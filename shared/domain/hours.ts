@@ -18,6 +18,11 @@ export function weekdayOf(day: DateTime): Weekday {
   return String(day.weekday) as Weekday;
 }
 
+/** Whether two instants fall on the same day of the shop's calendar. */
+export function isSameDay(one: Date, other: Date, zone: string): boolean {
+  return DateTime.fromJSDate(one, { zone }).hasSame(DateTime.fromJSDate(other, { zone }), 'day');
+}
+
 /** Whether the shop opens at all on that day of its own calendar. */
 export function isWorkingDay(day: DateTime, hours: WeekHours, closures: readonly Closure[]): boolean {
   const date = day.toISODate() ?? '';

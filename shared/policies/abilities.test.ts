@@ -2,6 +2,7 @@ import { describe, expect, it } from 'vitest';
 import {
   ABILITIES,
   abilitiesOf,
+  abilitiesOnJob,
   correctableTo,
   may,
   mayBookMachine,
@@ -10,7 +11,7 @@ import {
   type Ability,
 } from './abilities';
 import { CUSTOMER_ROLES, STAFF_ROLES, type Actor, type Role } from '#shared/domain/roles';
-import { MOVES } from '#shared/domain/stages';
+import { MOVES, type Stage } from '#shared/domain/stages';
 
 // Written out from the page that says who may do what, not read from the table under test.
 const ON_THE_FLOOR: Ability[] = ['gate.view', 'rail.view', 'job.view', 'job.move', 'job.correct', 'job.note'];
@@ -88,6 +89,32 @@ describe('undo', () => {
       }
     }
     expect(mayUndo({ roles: ['owner'] }, 'collected', 'booked')).toBe(false);
+  });
+});
+
+describe('on a job', () => {
+  const on = (role: Role, stage: Stage, endedToday = false) =>
+    abilitiesOnJob({ roles: [role] }, stage, endedToday);
+
+  it('a mechanic works on what stands in the shop, and only reads what has ended', () => {
+    expect(on('mechanic', 'repair')).toEqual(['job.view', 'job.move', 'job.correct', 'job.note']);
+    expect(on('mechanic', 'collected', true)).toEqual(['job.view', 'job.note']);
+    expect(on('mechanic', 'booked')).toEqual(['job.view', 'job.move', 'job.note']);
+  });
+
+  it('an end is taken back, and a late arrival let in, by the counter', () => {
+    expect(on('counter', 'collected', true)).toContain('job.correct');
+    expect(on('counter', 'collected', false)).not.toContain('job.correct');
+    expect([
+      on('counter', 'no_show').includes('job.move'),
+      on('mechanic', 'no_show').includes('job.move'),
+    ]).toEqual([true, false]);
+  });
+
+  it('is nothing for whoever is not of the shop floor', () => {
+    for (const role of ['driver', 'manager', 'crew_lead', 'bookkeeper'] as const) {
+      expect(on(role, 'repair'), role).toEqual([]);
+    }
   });
 });
 

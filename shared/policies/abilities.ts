@@ -3,7 +3,7 @@
  * A missing row means no.
  */
 import { holds, type Actor, type Role, type StaffRole } from '#shared/domain/roles';
-import { earlierStages, findMove, hasEnded, type Stage } from '#shared/domain/stages';
+import { earlierStages, findMove, hasEnded, movesFrom, type Stage } from '#shared/domain/stages';
 
 /** Coarse abilities, sent along with the session and with rows; the client shows or hides by them. */
 export const ABILITIES = [
@@ -77,4 +77,14 @@ export function correctableTo(actor: Pick<Actor, 'roles'>, stage: Stage, endedTo
   if (!holds(actor, correctors)) return [];
   if (hasEnded(stage) && !holds(actor, endedToday ? ['counter', 'owner'] : ['owner'])) return [];
   return earlierStages(stage);
+}
+
+/** What the actor may do with a job as it stands now; sent with the row, so that the client keeps no copy of the rule. */
+export function abilitiesOnJob(actor: Pick<Actor, 'roles'>, stage: Stage, endedToday: boolean): Ability[] {
+  const onJob: Ability[] = ['job.view', 'job.move', 'job.correct', 'job.note'];
+  return onJob.filter((ability) => {
+    if (!may(actor, ability)) return false;
+    if (ability === 'job.move') return movesFrom(stage).some((move) => holds(actor, move.roles));
+    return ability !== 'job.correct' || correctableTo(actor, stage, endedToday).length > 0;
+  });
 }

@@ -109,6 +109,8 @@ export interface RailJob {
   rush: boolean;
   /** The latest standing move while it can still be undone by the reader; else null. */
   undo: { eventId: string; until: string } | null;
+  /** What the reader may do with the job as it stands. */
+  abilities: Ability[];
 }
 
 /** GET /api/shop/rail */
@@ -143,6 +145,7 @@ export interface GateJob {
   words: string;
   checkedInAt: string | null;
   undo: { eventId: string; until: string } | null;
+  abilities: Ability[];
 }
 export interface GateVisit {
   id: string;
@@ -246,10 +249,11 @@ export interface JobSheet {
   lines: SignedLineView[];
   notices: NoticeView[];
   texts: InboundTextView[];
-  /** Who has been told of the present stage; a correction offers them one text. */
+  /** Who has been told of what a correction could take back; it offers one text to those whom it makes wrong. */
   told: { personId: string; name: string; channel: 'text' | 'email'; at: string }[];
   /** Stages that the reader may correct it back to; empty where he may not. */
   correctTo: Stage[];
+  /** What the reader may do at large; `job.abilities` says what with this job. */
   abilities: Ability[];
 }
 

@@ -132,6 +132,17 @@ describe('Rail', () => {
     expect(tagsOf(await rail())).toEqual([stays.tag]);
   });
 
+  test('each tag says what its reader may do with it', async () => {
+    const { tag } = await bookJob(app, shop);
+    const owner = await signedIn(app, shop, shop.staff.owner);
+    await bringTo(owner, tag, 'collected');
+    const abilitiesFor = async (client: Client) => (await sheetOf(client, tag)).job.abilities;
+    expect(await abilitiesFor(counter)).toEqual(['job.view', 'job.correct', 'job.note']);
+    expect(await abilitiesFor(mechanic)).toEqual(['job.view', 'job.note']);
+    const { jobs } = await rail(mechanic);
+    expect(jobs.find((job) => job.tag === tag)?.abilities).toEqual(['job.view', 'job.note']);
+  });
+
   test('undo is offered while it can be done, to whoever may', async () => {
     const { tag } = await bookJob(app, shop, { arrivesAt: AT_ELEVEN });
     expect((await rail()).jobs[0]?.undo).toBeNull();

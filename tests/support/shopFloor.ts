@@ -60,6 +60,7 @@ export function buildRailJob(more: Partial<RailJob> = {}): RailJob {
     arrivesAt: minutes(-3000),
     rush: false,
     undo: null,
+    abilities: ['job.view', 'job.move', 'job.correct', 'job.note'],
     ...more,
   };
 }
@@ -80,7 +81,7 @@ export function buildVisit(
   job: RailJob,
   more: Partial<GateView['visits'][number]> = {},
 ): GateView['visits'][number] {
-  const { id, tag, version, stage, machine, complaint, words } = job;
+  const { id, tag, version, stage, machine, complaint, words, abilities } = job;
   return {
     id: `visit-${id}`,
     stubCode: '5WN3KT',
@@ -89,7 +90,7 @@ export function buildVisit(
     bookedBy: { id: '00000000-0000-4000-8000-00000000cccc', name: 'Dana Ruiz', phone: '+13035550118' },
     people: [{ id: '00000000-0000-4000-8000-00000000cccc', name: 'Dana Ruiz' }],
     note: '',
-    jobs: [{ id, tag, version, stage, machine, complaint, words, checkedInAt: null, undo: null }],
+    jobs: [{ id, tag, version, stage, machine, complaint, words, abilities, checkedInAt: null, undo: null }],
     ...more,
   };
 }
