@@ -84,6 +84,9 @@ async function consume(...uses: LimitUse[]): Promise<void> {
 
 type Where = Pick<Ctx, 'ip' | 'shopId'>;
 
+/** An address of the older protocol as the newer one writes it. */
+const MAPPED = /^::ffff:(\d+\.\d+\.\d+\.\d+)$/i;
+
 const accountKey = ({ ip, shopId }: Where, email: string): string => `${shopId} ${email} ${networkOf(ip)}`;
 
 /**
@@ -92,7 +95,7 @@ const accountKey = ({ ip, shopId }: Where, email: string): string => `${shopId} 
  */
 export function limitSignIn(where: Where, email: string): Promise<void> {
   return consume(
-    { limit: 'signInAddress', key: where.ip },
+    { limit: 'signInAddress', key: addressOf(where.ip) },
     { limit: 'signInAccount', key: accountKey(where, email) },
   );
 }
@@ -100,7 +103,7 @@ export function limitSignIn(where: Where, email: string): Promise<void> {
 /** Takes back what a right password was counted for. */
 export async function forgiveSignIn(where: Where, email: string): Promise<void> {
   await limiters().signInAccount.delete(hashed(accountKey(where, email)));
-  await limiters().signInAddress.reward(hashed(where.ip));
+  await limiters().signInAddress.reward(hashed(addressOf(where.ip)));
 }
 
 /**
@@ -109,7 +112,7 @@ export async function forgiveSignIn(where: Where, email: string): Promise<void> 
  */
 export function limitCodes({ ip }: Where, phone: string): Promise<void> {
   return consume(
-    { limit: 'codeAddress', key: ip },
+    { limit: 'codeAddress', key: addressOf(ip) },
     { limit: 'codePhoneSoon', key: phone },
     { limit: 'codePhoneDay', key: phone },
     { limit: 'codePrefix', key: phone.slice(0, -4) },
@@ -122,7 +125,7 @@ export function limitCodes({ ip }: Where, phone: string): Promise<void> {
  */
 export function limitStubLookups({ ip }: Pick<Ctx, 'ip'>, shopId: string, code: string): Promise<void> {
   return consume(
-    { limit: 'stubAddress', key: ip },
+    { limit: 'stubAddress', key: addressOf(ip) },
     { limit: 'stubCode', key: `${shopId} ${normalizeCode(code)}` },
   );
 }
@@ -132,12 +135,19 @@ export function limitStubLookups({ ip }: Pick<Ctx, 'ip'>, shopId: string, code: 
  * @throws AppError too_many
  */
 export function limitReports({ ip }: Pick<Ctx, 'ip'>): Promise<void> {
-  return consume({ limit: 'reportAddress', key: ip });
+  return consume({ limit: 'reportAddress', key: addressOf(ip) });
+}
+
+/**
+ * What counts as one address: of the newer protocol a household gets 2^64 and more, so there it is the whole /64.
+ */
+export function addressOf(ip: string): string {
+  return isIPv6(ip) && !MAPPED.test(ip) ? networkOf(ip) : ip.replace(MAPPED, '$1');
 }
 
 /** The network of an address: its /24, or /64 in the newer protocol. */
 export function networkOf(ip: string): string {
-  const mapped = /^::ffff:(\d+\.\d+\.\d+\.\d+)$/i.exec(ip);
+  const mapped = MAPPED.exec(ip);
   if (mapped?.[1]) return networkOf(mapped[1]);
   if (!isIPv6(ip)) return ip.split('.').slice(0, 3).join('.');
   return expandIPv6(ip).slice(0, 4).join(':');
