@@ -14,6 +14,7 @@ import { manualClock } from '#server/lib/clock';
 import type { Ctx, Services } from '#server/lib/context';
 import { asRole, openDb, withShop } from '#server/lib/db';
 import { newId } from '#server/lib/ids';
+import { serializers } from '#server/lib/logger';
 import { codeHmac, CODE_LIFE_MS } from '#server/lib/loginCodes';
 import { LoginCode, type Person } from '#server/models/index';
 import type { Actor } from '#shared/domain/roles';
@@ -69,7 +70,7 @@ function readableLog(lines: string[]) {
       done();
     },
   });
-  return pino({ level: 'debug' }, stream);
+  return pino({ level: 'debug', serializers }, stream);
 }
 
 /** Starts the application. Stop it in afterAll. */
