@@ -56,17 +56,25 @@ function isKnown(req: Request): boolean {
   return STUB_ROUTE.test(req.path) || CLIENT_ROUTES.some((route) => route.test(req.path));
 }
 
+/** Nothing here is so large that a part of it is worth asking for. */
+const PLAIN = { index: false, acceptRanges: false } as const;
+
 /** The build's files. Names under assets/ carry a hash of the content and may be kept for ever. */
 function builtFiles(dist: string): RequestHandler {
   const router = express.Router();
-  const assets = express.static(join(dist, 'assets'), { immutable: true, maxAge: '1y', index: false });
+  const assets = express.static(join(dist, 'assets'), { ...PLAIN, immutable: true, maxAge: '1y' });
   router.use('/assets', assets, () => {
     throw new AppError('not_found');
   });
-  const others = express.static(dist, { maxAge: '1h', index: false, redirect: false });
+  const others = express.static(dist, { ...PLAIN, maxAge: '1h', redirect: false });
   // The templates are not pages: they go out with a nonce or not at all.
-  router.use((req, res, next) => (req.path.endsWith('.html') ? next() : others(req, res, next)));
+  router.use((req, res, next) => (isTemplate(req.path) ? next() : others(req, res, next)));
   return router;
+}
+
+/** Looked at as the file server reads it, with every sign decoded. */
+function isTemplate(path: string): boolean {
+  return /\.html$/i.test(decodeURIComponent(path));
 }
 
 function builtTemplates(dist: string): ReadTemplate {

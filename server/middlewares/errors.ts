@@ -17,15 +17,12 @@ const OUT_OF_REACH = new Set([
 /** What the body parser and Express itself throw, as errors of ours. */
 function known(error: unknown): AppError | null {
   if (error instanceof AppError) return error;
-  const { type, status, name } = error as { type?: string; status?: number; name?: string };
+  const { status, name } = error as { status?: number; name?: string };
   if (OUT_OF_REACH.has(name ?? '')) return new AppError('unavailable', { retryAfter: 5, cause: error });
-  if (type === 'entity.too.large') {
+  if (status === 413) {
     return new AppError('invalid', { fields: [{ path: '', key: 'errors.field.too_large' }], cause: error });
   }
-  if (type === 'entity.parse.failed' || status === 400) {
-    return new AppError('invalid', { fields: [{ path: '', key: 'errors.field.unreadable' }], cause: error });
-  }
-  if (type === 'charset.unsupported' || type === 'encoding.unsupported' || status === 415) {
+  if (status !== undefined && status >= 400 && status < 500) {
     return new AppError('invalid', { fields: [{ path: '', key: 'errors.field.unreadable' }], cause: error });
   }
   return null;

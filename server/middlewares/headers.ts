@@ -12,7 +12,7 @@ export const requestId: RequestHandler = (req, res, next) => {
 
 const REPORTS = '/api/csp-reports';
 /** Pages and answers behind an address that is a secret: never indexed, never kept. */
-const SECRET_ADDRESS = /^(\/api)?\/[tu]\//;
+const SECRET_ADDRESS = /^(\/api)?\/([tu]|s(hops)?\/[^/]+\/password(-links)?)\//i;
 const ONE_YEAR = 365 * 24 * 60 * 60;
 
 /**

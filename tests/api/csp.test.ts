@@ -72,7 +72,7 @@ describe('pages', () => {
   );
 
   test('the templates are never sent as they lie on the disk', async () => {
-    for (const path of ['/index.html', '/stub.html']) {
+    for (const path of ['/index.html', '/stub.html', '/index%2ehtml', '/stub.htm%6C']) {
       const answer = await get(path).expect(404);
       expect(answer.text).not.toContain('__NONCE__');
     }
@@ -93,6 +93,13 @@ describe('files', () => {
     });
     const brotli = await get('/assets/app-3f9c.js').set('Accept-Encoding', 'br');
     expect(brotli.headers['content-encoding']).toBe('br');
+  });
+
+  test.each([
+    ['Range', 'bytes=999999-'],
+    ['If-Match', '"another"'],
+  ])('asked for with a %s that does not fit are no fault of ours', async (name, value) => {
+    expect((await get('/robots.txt').set(name, value)).status).toBeLessThan(500);
   });
 
   test('that are gone are not a page', async () => {
