@@ -1,4 +1,4 @@
-import express, { type Express } from 'express';
+import express, { type Express, type RequestHandler } from 'express';
 import type { Services } from '#server/lib/context';
 import { auditRefusals } from '#server/middlewares/auditRefusals';
 import { answerErrors, unknownAddress } from '#server/middlewares/errors';
@@ -11,6 +11,18 @@ import { routeTable } from '#server/routes/table';
 import { pages } from '#server/lib/pages';
 
 const BODY_LIMIT = '100kb';
+const readJson = express.json({
+  limit: BODY_LIMIT,
+  type: ['application/json', 'application/csp-report', 'application/reports+json'],
+});
+
+/** Reads the body. What is wrong with it is said in its turn: after who calls, and whether he may. */
+const jsonBody: RequestHandler = (req, res, next) => {
+  readJson(req, res, (problem?: Error) => {
+    if (problem) req.bodyProblem = problem;
+    next();
+  });
+};
 
 /** Builds the application; whoever calls it listens. */
 export async function createApp(services: Services): Promise<Express> {
@@ -19,13 +31,7 @@ export async function createApp(services: Services): Promise<Express> {
   app.set('trust proxy', services.env.TRUSTED_HOPS);
   app.set('query parser', 'simple');
   app.use(requestId, plainAddress, securityHeaders(services.env), refuseCrossSite(services.env));
-  app.use(
-    '/api',
-    express.json({
-      limit: BODY_LIMIT,
-      type: ['application/json', 'application/csp-report', 'application/reports+json'],
-    }),
-  );
+  app.use('/api', jsonBody);
   app.use('/api', ...sessions(services));
   mountRoutes(app, services, routeTable(services));
   app.use(['/api', '/hooks'], unknownAddress);

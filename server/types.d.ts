@@ -9,6 +9,8 @@ declare global {
       id: string;
       /** The nonce of this answer's content security policy. */
       cspNonce: string;
+      /** Why the body could not be read. Told only to whoever may send one. */
+      bodyProblem?: Error;
     }
   }
 }

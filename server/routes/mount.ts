@@ -22,6 +22,7 @@ function answer(services: Services, definition: RouteDefinition): RequestHandler
     const row = definition.load ? await definition.load({ ctx, params }) : undefined;
     requireAllowed(definition, ctx.actor, row);
     if (definition.idempotent) requireKey(req);
+    if (req.bodyProblem) throw req.bodyProblem;
     const body = parse(definition.body, req.body ?? {});
     const query = parse(definition.query, req.query);
     const result = await definition.handle({ ctx, params, body, query, row, headers: req.headers, req });
