@@ -33,6 +33,23 @@ describe('a line of text', () => {
     }
   });
 
+  it('is blank when a reader sees nothing', () => {
+    // Zero width space, soft hyphen, byte order mark, Hangul filler, braille blank: Unicode 15, chapters 6, 18 and 23.
+    for (const unseen of ['\u200b', '\u00ad\u2060', '\ufeff', '\u3164', '\u2800', '\u202e']) {
+      expect(messages(line(60), unseen), JSON.stringify(unseen)).toEqual(['errors.field.required']);
+      expect(messages(text(60), unseen)).toEqual(['errors.field.required']);
+      expect(optionalLine(60).parse(unseen)).toBe('');
+      expect(optionalText(60).parse(unseen)).toBe('');
+    }
+  });
+
+  it('reads as it was typed: without the marks that turn text around, and on one line', () => {
+    expect(line(60).parse('\u202ePike\u202c Decks')).toBe('Pike Decks');
+    expect(optionalText(60).parse('a\u2067b\u2069')).toBe('ab');
+    for (const broken of ['a\u2028b', 'a\u2029b']) expect(takes(line(60), broken)).toBe(false);
+    expect(line(60).parse('👩\u200d🔧 Ada')).toBe('👩\u200d🔧 Ada');
+  });
+
   it('holds no half of a surrogate pair', () => {
     for (const wrong of ['a\ud83d', '\ude00b', '\ude00\ud83d']) {
       expect(takes(line(60), wrong)).toBe(false);
@@ -55,6 +72,7 @@ describe('several lines', () => {
   it('are checked fast however long', () => {
     const started = performance.now();
     expect(takes(optionalText(200_000), `${'a\n'.repeat(99_999)}\u0000`)).toBe(false);
+    expect(takes(optionalText(200_000), `${'\u00ad '.repeat(99_000)}x`)).toBe(true);
     expect(performance.now() - started).toBeLessThan(1000);
   });
 });

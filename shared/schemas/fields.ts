@@ -11,15 +11,29 @@ export const language = z.enum(LANGUAGES);
  * Control characters have no place in one line of text, and line breaks could end up in a mail header. Half of a
  * surrogate pair is no character at all, and the database's JSON refuses it.
  */
-const oneLine = /^[^\p{Cc}\p{Cs}]*$/u;
+const oneLine = /^[^\p{Cc}\p{Cs}\p{Zl}\p{Zp}]*$/u;
 /** Text areas keep line breaks and tabs; the database takes no zero byte. */
 const manyLines = /^[^\p{Cc}\p{Cs}]*(?:[\n\r\t][^\p{Cc}\p{Cs}]*)*$/u;
+
+/** Marks that turn the direction of text around: with them a name reads as another than it is. */
+const TURNING = /[\u202a-\u202e\u2066-\u2069]/g;
+/** Nothing that a reader sees: spaces, format characters, and the letters that are drawn as nothing. */
+const UNSEEN = /^[\s\p{Z}\p{Cf}\p{Default_Ignorable_Code_Point}\u2800]*$/u;
+
+/**
+ * What was typed, trimmed. Turning marks come along unseen when somebody pastes, so they are dropped and not
+ * complained of; what shows nothing is blank.
+ */
+function seen(typed: string): string {
+  const plain = typed.replace(TURNING, '');
+  return UNSEEN.test(plain) ? '' : plain.trim();
+}
 
 /** A required line of text, trimmed, of at most `max` characters. */
 export function line(max: number) {
   return z
     .string()
-    .trim()
+    .overwrite(seen)
     .min(1, 'errors.field.required')
     .max(max, 'errors.field.too_long')
     .regex(oneLine, 'errors.field.characters');
@@ -29,7 +43,7 @@ export function line(max: number) {
 export function optionalLine(max: number) {
   return z
     .string()
-    .trim()
+    .overwrite(seen)
     .max(max, 'errors.field.too_long')
     .regex(oneLine, 'errors.field.characters')
     .default('');
@@ -39,7 +53,7 @@ export function optionalLine(max: number) {
 export function optionalText(max: number) {
   return z
     .string()
-    .trim()
+    .overwrite(seen)
     .max(max, 'errors.field.too_long')
     .regex(manyLines, 'errors.field.characters')
     .default('');
@@ -49,7 +63,7 @@ export function optionalText(max: number) {
 export function text(max: number) {
   return z
     .string()
-    .trim()
+    .overwrite(seen)
     .min(1, 'errors.field.required')
     .max(max, 'errors.field.too_long')
     .regex(manyLines, 'errors.field.characters');

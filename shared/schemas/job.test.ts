@@ -29,6 +29,14 @@ describe('a move', () => {
   });
 });
 
+describe('what a move does not ask for', () => {
+  it('is not slipped in with it', () => {
+    expect(issues({ checkIn })).toEqual([['checkIn', 'errors.field.unknown']]);
+    expect(issues({ partsReason: 'part' })).toEqual([['partsReason', 'errors.field.unknown']]);
+    expect(issues({ to: 'awaiting_parts', partsReason: 'part' })).toEqual([]);
+  });
+});
+
 describe('checking in', () => {
   const at = (given: object) => issues({ to: 'checked_in', ...given });
 

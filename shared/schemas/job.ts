@@ -16,7 +16,7 @@ import type { Ability } from '#shared/policies/abilities';
 
 const LINE_MAX = 300;
 
-export const SignedLineInput = z.strictObject({
+const SignedLineInput = z.strictObject({
   guard: z.enum(GUARD_KEYS),
   mode: z.enum(['met', 'without']),
   how: optionalText(LINE_MAX),
@@ -26,7 +26,7 @@ export const SignedLineInput = z.strictObject({
 });
 
 /** What the gate asks when a machine comes in. */
-export const CheckInInput = z
+const CheckInInput = z
   .strictObject({
     /** A blank tag of the shop's, hung in place of the one given at booking. */
     newTag: code.optional(),
@@ -55,8 +55,12 @@ export const MoveBody = z
     note: optionalText(500),
   })
   .superRefine((body, ctx) => {
-    if (body.to !== 'checked_in') return;
-    if (!body.checkIn) {
+    const unasked = (path: string) =>
+      ctx.addIssue({ code: 'custom', path: [path], message: 'errors.field.unknown' });
+    if (body.to !== 'awaiting_parts' && body.partsReason) unasked('partsReason');
+    if (body.to !== 'checked_in') {
+      if (body.checkIn) unasked('checkIn');
+    } else if (!body.checkIn) {
       ctx.addIssue({ code: 'custom', path: ['checkIn'], message: 'errors.field.required' });
     } else if (!(body.checkIn.tankBled && body.checkIn.fuelOff) && body.note === '') {
       ctx.addIssue({ code: 'custom', path: ['note'], message: 'errors.field.why_not_made_safe' });

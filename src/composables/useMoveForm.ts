@@ -100,7 +100,7 @@ export function useMoveForm(options: MoveFormOptions) {
       version: toValue(options.version),
       to: choice.value.to,
       outcome: outcome.value,
-      partsReason: partsReason.value,
+      partsReason: asksReason.value ? partsReason.value : null,
       lines: guards.value.flatMap((guard) => lineInput(guard, lineOf(guard))),
       note: note.value,
       ...(isCheckIn.value ? { checkIn: checkInInput(checkIn) } : {}),
