@@ -46,6 +46,9 @@ export interface KillReport {
 }
 
 const CLIENTS = 8;
+const ANY_MOMENT_MS = 40;
+/** The last kills fall before the last texts, so that each of them hits something. */
+const SPREAD = 0.85;
 const SETTLE_MS = 240_000;
 
 /** Runs it, from an empty database to the last text. */
@@ -84,6 +87,10 @@ async function stackNow(stack: Stack): Promise<Date> {
   return new Date(Date.now() + offsetMs);
 }
 
+/** After how many of `count` things the next kill is due. */
+const momentOf = (done: number, planned: number, count: number): number =>
+  ((done + 1) * count * SPREAD) / (planned + 1);
+
 /** Kills, and starts again what it killed. */
 class Killer {
   readonly done = { placed: 0, worker: 0, web: 0 };
@@ -92,6 +99,7 @@ class Killer {
   #server: Server | undefined;
   #rising = new Set<Promise<unknown>>();
   #workerIsDown = false;
+  #webIsDown = false;
 
   constructor(
     private readonly worker: StackChild,
@@ -113,40 +121,45 @@ class Killer {
     await control(this.stack, 'faults', { callbacks: { off: true } });
   }
 
-  /** Counts a change and kills at the moments of the plan, which lie apart from one another. */
+  /** Counts a change; servers die at even distances of these. */
   async onChanged(): Promise<void> {
     this.#changed += 1;
-    const { changes, webKills, workerKills } = this.plan;
-    if (this.#changed % Math.floor(changes / (webKills + 1)) === 0 && this.done.web < webKills) {
+    const { changes, webKills } = this.plan;
+    if (this.#changed >= momentOf(this.done.web, webKills, changes) && this.done.web < webKills) {
       await this.#killWeb();
-    }
-    const step = Math.floor(changes / (workerKills + 1));
-    if (this.#changed % step === Math.floor(step / 2) && this.done.worker < workerKills) {
-      await this.#killWorker('worker');
     }
   }
 
+  /** Counts a text; workers die at even distances of these, in the gateway's own pause or shortly after it. */
   async #onAccepted(): Promise<void> {
     this.#accepted += 1;
-    const { changes, placed } = this.plan;
-    const isDue = this.#accepted >= ((this.done.placed + 1) * changes * 0.9) / (placed + 1);
-    if (isDue && this.done.placed < placed) await this.#killWorker('placed');
+    const { changes, placed, workerKills } = this.plan;
+    if (this.#accepted >= momentOf(this.done.placed, placed, changes) && this.done.placed < placed) {
+      return this.#killWorker('placed');
+    }
+    if (this.#accepted < momentOf(this.done.worker, workerKills, changes)) return;
+    if (this.done.worker < workerKills) setTimeout(() => void this.#killWorker('worker'), ANY_MOMENT_MS);
   }
 
   async #killWorker(why: 'placed' | 'worker'): Promise<void> {
-    if (this.#workerIsDown) return;
+    if (this.#workerIsDown || this.done[why] >= this.#planned(why)) return;
     this.#workerIsDown = true;
     this.done[why] += 1;
     await this.worker.kill('SIGKILL');
     this.#raise(this.worker, () => (this.#workerIsDown = false));
   }
 
+  #planned(why: 'placed' | 'worker'): number {
+    return why === 'placed' ? this.plan.placed : this.plan.workerKills;
+  }
+
   async #killWeb(): Promise<void> {
     const [web] = this.stack.webs;
-    if (!web) return;
+    if (!web || this.#webIsDown) return;
+    this.#webIsDown = true;
     this.done.web += 1;
     await web.kill('SIGKILL');
-    this.#raise(web, () => undefined);
+    this.#raise(web, () => (this.#webIsDown = false));
   }
 
   #raise(child: StackChild, then: () => void): void {
