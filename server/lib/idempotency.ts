@@ -35,10 +35,8 @@ export async function once<T>(ctx: Ctx, request: KeyedRequest, act: () => Promis
   );
   if (taken.length === 0) return replay<T>(request.key, hash);
   const answer = await act();
-  await run('update idempotency_keys set status = 200, answer = $2 where id = $1', [
-    taken[0]?.id,
-    JSON.stringify(answer),
-  ]);
+  const kept = [taken[0]?.id, JSON.stringify(answer)];
+  await run('update idempotency_keys set answer = $2 where id = $1', kept);
   return answer;
 }
 

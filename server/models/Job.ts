@@ -25,7 +25,6 @@ export class Job extends Model<InferAttributes<Job>, InferCreationAttributes<Job
   declare stage: Stage;
   declare stageSince: Date;
   declare outcome: CreationOptional<Outcome | null>;
-  declare outcomeNote: CreationOptional<string>;
   declare partsReason: CreationOptional<PartsReason | null>;
   declare rush: CreationOptional<boolean>;
   declare version: CreationOptional<number>;
@@ -49,7 +48,6 @@ export class Job extends Model<InferAttributes<Job>, InferCreationAttributes<Job
         stage: { type: DataTypes.TEXT, allowNull: false },
         stageSince: { type: DataTypes.DATE, allowNull: false },
         outcome: { type: DataTypes.TEXT },
-        outcomeNote: { type: DataTypes.TEXT },
         partsReason: { type: DataTypes.TEXT },
         rush: { type: DataTypes.BOOLEAN },
         version: { type: DataTypes.INTEGER },

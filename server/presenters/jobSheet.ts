@@ -29,17 +29,17 @@ export async function presentJobSheet(ctx: Ctx, jobId: string): Promise<JobSheet
   const visit = await Visit.findByPk(job.visitId, { rejectOnEmpty: true });
   const shop = await unitShopOf(ctx.shopId);
   const history = await readEvents(jobId);
+  const found = await SignedLine.findAll({ where: { jobId }, order: [['at', 'ASC']] });
+  const lines = found.map((line) => presentLine(line, history));
   return {
     now: ctx.now.toISOString(),
     zone: shop.zone,
     unpaidLimitCents: shop.settings.unpaidLimitCents,
-    job: await presentJob(ctx, job, visit),
+    job: await presentJob(ctx, job, visit, lines),
     people: await presentPeople(await peopleOf(visit, job)),
     history: history.events.map((event) => presentEvent(event, history, ctx.now)),
     notes: (await JobNote.findAll({ where: { jobId }, order: [['at', 'DESC']] })).map(presentNote),
-    lines: (await SignedLine.findAll({ where: { jobId }, order: [['at', 'ASC']] })).map((line) =>
-      presentLine(line, history),
-    ),
+    lines,
     notices: await presentNotices(ctx, jobId, visit.id),
     texts: await textsOfVisit(visit.id),
     told: await toldOf(await eventsToTellAgain(history)),
@@ -48,7 +48,12 @@ export async function presentJobSheet(ctx: Ctx, jobId: string): Promise<JobSheet
   };
 }
 
-async function presentJob(ctx: Ctx, job: Job, visit: Visit): Promise<JobSheet['job']> {
+async function presentJob(
+  ctx: Ctx,
+  job: Job,
+  visit: Visit,
+  lines: readonly SignedLineView[],
+): Promise<JobSheet['job']> {
   const row = await railJob(job.id);
   const billed = await Account.findByPk(job.billedAccountId, { rejectOnEmpty: true });
   if (!row) throw new Error(`job ${job.id} has no current tag`);
@@ -58,8 +63,13 @@ async function presentJob(ctx: Ctx, job: Job, visit: Visit): Promise<JobSheet['j
     billed: { id: billed.id, name: billed.name },
     broughtBy: job.broughtByName || null,
     leftWithIt: job.leftWithIt,
-    outcomeNote: job.outcomeNote,
+    outcomeNote: job.outcome === 'partly_repaired' ? whatIsLeft(lines) : '',
   };
+}
+
+/** A partly repaired machine goes out with the words on what is left. */
+function whatIsLeft(lines: readonly SignedLineView[]): string {
+  return lines.findLast(({ guard, voided }) => guard === 'what_is_left' && !voided)?.how ?? '';
 }
 
 /** Whom the shop may want to call: who booked, who brought it, and the managers of whoever is billed. */

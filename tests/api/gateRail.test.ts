@@ -189,6 +189,16 @@ describe('job sheet', () => {
     expect((await sheetOf(mechanic, tag)).correctTo).toEqual(['booked', 'checked_in']);
   });
 
+  test('a partly repaired machine says what is left, until it is worked on again', async () => {
+    const { tag } = await bookJob(app, shop);
+    await bringTo(counter, tag, 'test_run');
+    const left = { guard: 'what_is_left', mode: 'met', how: 'belt is worn, new one is on order' };
+    await postMove(counter, tag, 'ready', { outcome: 'partly_repaired', lines: [left] });
+    expect((await sheetOf(counter, tag)).job.outcomeNote).toBe('belt is worn, new one is on order');
+    await postMove(counter, tag, 'repair');
+    expect((await sheetOf(counter, tag)).job.outcomeNote).toBe('');
+  });
+
   test('a note counts once, however often it is sent', async () => {
     const { tag } = await bookJob(app, shop, { arrivesAt: AT_ELEVEN });
     const key = 'one-note-only';
