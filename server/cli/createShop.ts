@@ -25,7 +25,7 @@ async function refuseTaken({ slug, sender }: ShopForm): Promise<void> {
   if (faults.length > 0) throw new Error(faults.join('\n'));
 }
 
-async function openShop(form: ShopForm): Promise<string> {
+async function createShop(form: ShopForm): Promise<string> {
   const owner = new Sequelize(asRole(env.DATABASE_URL, env.DB_OWNER_ROLE), {
     dialect: 'postgres',
     logging: false,
@@ -67,7 +67,7 @@ async function main(): Promise<void> {
   try {
     await refuseStrongRole(db);
     await refuseTaken(form);
-    const shopId = await openShop(form);
+    const shopId = await createShop(form);
     const path = await inviteOwner(shopId, form, clock.now());
     console.log(`${form.name} is open at ${env.PUBLIC_URL}/s/${form.slug}`);
     console.log(`${form['owner-name']} sets a password here, once, within ${PASSWORD_LINK_HOURS} hours:`);

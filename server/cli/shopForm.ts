@@ -79,7 +79,7 @@ export function givenOnCommandLine(args: string[]): Given {
 }
 
 /** What a field is when nothing is said. */
-export function usualValue(field: Field, given: Given): string | undefined {
+function usualValue(field: Field, given: Given): string | undefined {
   const name = given.name?.trim() ?? '';
   if (field === 'text-name' && name.length <= TEXT_NAME_MAX) return name || undefined;
   if (field === 'hours') return USUAL_HOURS_TYPED;

@@ -29,7 +29,7 @@ export async function startClock(url: string | undefined): Promise<Clock> {
   return { now: () => new Date(Date.now() + offset), stop: () => clearInterval(timer) };
 }
 
-/** A clock that stands where it is put: for tests and for the demo's past. */
+/** A clock that stands where it is put, for tests. */
 export function manualClock(start: Date): Clock & { set(at: Date): void } {
   let at = start;
   return { now: () => new Date(at), set: (next) => (at = next), stop: () => undefined };

@@ -29,7 +29,7 @@ const i18n = createI18n({
 const { global } = i18n;
 
 /** Whether the catalogues of that language have the key. */
-export function hasWords(language: Language, key: string): boolean {
+function hasWords(language: Language, key: string): boolean {
   return global.te(key, language);
 }
 

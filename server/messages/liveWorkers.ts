@@ -5,7 +5,7 @@
 import { rows } from '#server/lib/db';
 
 /** At least twice the provider's timeout, so that a dead worker's request has ended when others take over. */
-export const DEAD_AFTER_SECONDS = 20;
+const DEAD_AFTER_SECONDS = 20;
 
 /** Condition on a row of worker_heartbeats. */
 export const IS_DEAD = `beat_at < clock_timestamp() - interval '${DEAD_AFTER_SECONDS} seconds'`;

@@ -1,7 +1,7 @@
 /** What can go wrong with a message, in words for the shop. */
 import type { Message } from '#server/models/index';
 
-export const PROBLEMS = {
+const PROBLEMS = {
   opted_out: 'This phone said STOP. It gets no texts until it says START.',
   no_email: 'This phone gets no texts and there is no e-mail address: call.',
   no_consent: 'No consent to texts on record.',

@@ -2,7 +2,7 @@
 import { afterQuietHours } from '#shared/domain/hours';
 
 /** A person who acted this recently is awake, whatever the hour. */
-export const JUST_ACTED_MS = 15 * 60_000;
+const JUST_ACTED_MS = 15 * 60_000;
 /** A message waits for later changes of the visit at most this many graces after its oldest notice. */
 const GRACES_AT_MOST = 3;
 

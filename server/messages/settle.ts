@@ -11,7 +11,7 @@ import { stopTextsTo } from './optOut';
 import type { Problem } from './problems';
 
 /** How far a text has come; a later report never says less. */
-export const DELIVERY_RANK: Record<Delivery, number> = {
+const DELIVERY_RANK: Record<Delivery, number> = {
   queued: 0,
   sending: 1,
   sent: 2,

@@ -19,7 +19,7 @@ export function wordText(facts: NewsFacts): string {
 }
 
 /** Whether a text stays in one segment of the short alphabet. */
-export function fitsOneText(text: string): boolean {
+function fitsOneText(text: string): boolean {
   const { encoding, segments } = textLength(text);
   return encoding === 'GSM-7' && segments === 1;
 }

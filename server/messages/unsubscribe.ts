@@ -27,7 +27,7 @@ export function unsubscribeToken(env: Keys, shopId: string, personId: string): s
 }
 
 /** @returns whose e-mails the token speaks of, or null where we did not make it */
-export function readUnsubscribeToken(env: Keys, token: string): { shopId: string; personId: string } | null {
+function readUnsubscribeToken(env: Keys, token: string): { shopId: string; personId: string } | null {
   const bytes = Buffer.from(token, 'base64url');
   if (bytes.length !== 2 * ID_BYTES + MAC_BYTES || bytes.toString('base64url') !== token) return null;
   const ids = bytes.subarray(0, 2 * ID_BYTES);

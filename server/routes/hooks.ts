@@ -52,7 +52,7 @@ export function hookRoutes(services: Services): RawRouteDefinition[] {
 }
 
 /** The signed address is made from our own public one: what a request says of its host proves nothing. */
-export function requireSignature({ env, log }: Services): RequestHandler {
+function requireSignature({ env, log }: Services): RequestHandler {
   return (req, res, next) => {
     const signature = req.get('x-twilio-signature') ?? '';
     const url = `${env.PUBLIC_URL}${req.originalUrl}`;
@@ -67,7 +67,7 @@ function formOf(req: Request): Record<string, unknown> {
 }
 
 /** A report on a text of ours. */
-export function textStatus(services: Services): RequestHandler {
+function textStatus(services: Services): RequestHandler {
   return async (req, res) => {
     const path = StatusPath.safeParse(req.params);
     if (!path.success || !(await Shop.findByPk(path.data.shopId))) return void res.status(404).end();
@@ -82,7 +82,7 @@ export function textStatus(services: Services): RequestHandler {
 }
 
 /** A text from a customer, to one of our shops' numbers. */
-export function inboundText(services: Services): RequestHandler {
+function inboundText(services: Services): RequestHandler {
   return async (req, res) => {
     const body = InboundBody.safeParse(formOf(req));
     if (!body.success) return void res.status(400).end();

@@ -14,7 +14,7 @@ export interface Closure {
 export type Half = 'am' | 'pm';
 
 /** The ISO weekday of a day as the key of WeekHours. */
-export function weekdayOf(day: DateTime): Weekday {
+function weekdayOf(day: DateTime): Weekday {
   return String(day.weekday) as Weekday;
 }
 

@@ -13,7 +13,7 @@ const complaint = {
 };
 
 /** A machine of the account's fleet. */
-export const FleetMachine = z.strictObject({ from: z.literal('fleet'), machineId: uuid, ...complaint });
+const FleetMachine = z.strictObject({ from: z.literal('fleet'), machineId: uuid, ...complaint });
 /** A machine that the shop has not seen yet. */
 export const NewMachine = z.strictObject({
   from: z.literal('new'),

@@ -48,7 +48,7 @@ beforeAll(async () => {
   webs = stack.webs.map(({ said }) => said);
   owner = new Sequelize(asRole(database.url, database.ownerRole), { dialect: 'postgres', logging: false });
   openDb({ url: database.url, role: database.appRole, pool: 4 });
-  await openShop();
+  await openTestShop();
 }, 120_000);
 
 afterAll(async () => {
@@ -58,7 +58,7 @@ afterAll(async () => {
   await rm(logDir, { recursive: true, force: true });
 });
 
-async function openShop(): Promise<void> {
+async function openTestShop(): Promise<void> {
   const hours = Object.fromEntries(
     [1, 2, 3, 4, 5, 6, 7].map((day) => [day, [{ from: '07:00', to: '17:00' }]]),
   );
