@@ -65,18 +65,22 @@ export function buildRailJob(more: Partial<RailJob> = {}): RailJob {
   };
 }
 
+/** The Rail with these tags. */
 export function buildRail(jobs: RailJob[], more: Partial<RailView> = {}): RailView {
   return { now: NOW, zone: ZONE, unpaidLimitCents: 25_000, pegs: { test_run: 2 }, jobs, ...more };
 }
 
+/** The answer to a move of that job. */
 export function buildMoveAnswer(job: RailJob, more: Partial<MoveAnswer> = {}): MoveAnswer {
   return { job: { ...job, version: job.version + 1 }, held: [], ...more };
 }
 
+/** The Gate, empty unless more is given. */
 export function buildGate(more: Partial<GateView> = {}): GateView {
   return { now: NOW, zone: ZONE, date: '2026-12-01', visits: [], unanswered: [], ...more };
 }
 
+/** A visit at the Gate with that one machine. */
 export function buildVisit(
   job: RailJob,
   more: Partial<GateView['visits'][number]> = {},
@@ -95,6 +99,7 @@ export function buildVisit(
   };
 }
 
+/** The sheet of that job. */
 export function buildSheet(job: RailJob, more: Partial<JobSheet> = {}): JobSheet {
   return {
     now: NOW,
