@@ -5,6 +5,7 @@ import { newId } from '#server/lib/ids';
 import { settingsOf } from '#server/lib/shops';
 import { translate } from '#server/lib/translate';
 import { Person } from '#server/models/index';
+import { ENDED_LIST } from '#server/queries/endedStages';
 import { formatPhone } from '#shared/domain/phone';
 import type { Language } from '#shared/domain/when';
 import { allowTextsTo, isOptedOut, stopTextsTo } from './optOut';
@@ -113,7 +114,7 @@ async function writerOf(phone: string): Promise<Writer> {
        select w.id, w.created_at, w.booked_by_person_id, count(j.id) as open_jobs, min(j.id::text)::uuid as job_id
        from visits w
        join jobs j on j.shop_id = w.shop_id and j.visit_id = w.id
-         and j.stage not in ('collected', 'cancelled', 'no_show', 'disposed')
+         and j.stage not in (${ENDED_LIST})
        where w.shop_id = p.shop_id and (w.booked_by_person_id = p.id
          or w.account_id = p.account_id and p.roles @> array['manager'])
        group by w.shop_id, w.id

@@ -1,5 +1,6 @@
 import type { Ctx } from '#server/lib/context';
 import { rows } from '#server/lib/db';
+import { ENDED_LIST } from '#server/queries/endedStages';
 import { EVER_PUBLIC } from '#server/queries/publicEvents';
 import { mayBookMachine } from '#shared/policies/abilities';
 import type { FleetView } from '#shared/schemas/booking';
@@ -19,7 +20,7 @@ export async function presentFleet(ctx: Ctx): Promise<FleetView> {
           select e.to_stage from job_events e
           where e.shop_id = j.shop_id and e.job_id = j.id and e.visible_at <= $2 and ${EVER_PUBLIC}
           order by e.seq desc limit 1
-        ) last on last.to_stage not in ('collected', 'no_show', 'cancelled', 'disposed')
+        ) last on last.to_stage not in (${ENDED_LIST})
         where j.shop_id = m.shop_id and j.machine_id = m.id
         order by j.created_at desc, j.id limit 1) as "openStage"
      from machines m where m.account_id = $1

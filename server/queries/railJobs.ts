@@ -1,5 +1,6 @@
 /** Tags of the Rail, each read of any number of jobs being one statement. */
 import { rows } from '#server/lib/db';
+import { ENDED_LIST } from './endedStages';
 import type { MachineKind } from '#shared/domain/machineKinds';
 import type { Outcome, PartsReason, Stage } from '#shared/domain/stages';
 
@@ -64,7 +65,7 @@ const JOBS = `
 export function railJobs(bookedUntil: Date, collectedSince: Date): Promise<JobRow[]> {
   return rows<JobRow>(
     `${JOBS}
-     where j.stage not in ('cancelled', 'no_show', 'disposed', 'booked', 'collected')
+     where j.stage not in ('booked', ${ENDED_LIST})
         or (j.stage = 'booked' and v.arrives_at < $1)
         or (j.stage = 'collected' and j.stage_since >= $2)
      order by case when j.stage = 'booked' then v.arrives_at else j.stage_since end, j.id`,

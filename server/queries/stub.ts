@@ -1,5 +1,6 @@
 /** The public page of a visit, read in one statement: it is what customers open all day long. */
 import { rows } from '#server/lib/db';
+import { ENDED_LIST } from './endedStages';
 import { EVER_PUBLIC } from './publicEvents';
 import type { StubView } from '#shared/schemas/stub';
 
@@ -41,7 +42,7 @@ const STUB = `
   )
   select
     link.revoked_at is not null
-      or (select bool_and(stage in ('collected', 'cancelled', 'no_show', 'disposed')) and max(last_at) < $3
+      or (select bool_and(stage in (${ENDED_LIST})) and max(last_at) < $3
           from machines_of_visit) as ended,
     json_build_object(
       'nextChangeAt', (select min(visible_at) from open_events where not visible),
