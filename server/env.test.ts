@@ -1,5 +1,6 @@
+import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
-import { parseEnv } from './env';
+import { EnvSchema, parseEnv } from './env';
 
 const hex = 'a1'.repeat(32);
 const RIGHT = {
@@ -87,4 +88,13 @@ describe('parseEnv', () => {
     expect(parseEnv({ ...RIGHT, NODE_ENV: undefined }).NODE_ENV).toBe('production');
     expect(refused({ NODE_ENV: undefined, CLOCK_URL: 'http://127.0.0.1:5190' })).toEqual(['CLOCK_URL']);
   });
+});
+
+it('is told whole in the README, one row a variable or a group of them', () => {
+  const readme = readFileSync(new URL('../README.md', import.meta.url), 'utf8');
+  const rows = readme.split('\n').filter((line) => line.startsWith('| `'));
+  const told = rows.flatMap((row) =>
+    [...(row.split('|')[1] ?? '').matchAll(/`([A-Z_]+)`/g)].map(([, name]) => name),
+  );
+  expect(told.sort()).toEqual(Object.keys(EnvSchema.shape).sort());
 });

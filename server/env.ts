@@ -7,7 +7,8 @@ const httpUrl = z
   .url({ protocol: /^https?$/, error: 'an http or https address' })
   .transform((url) => url.replace(/\/+$/, ''));
 
-const EnvSchema = z
+/** Every variable that the server and the worker read. */
+export const EnvSchema = z
   .object({
     NODE_ENV: z.enum(['production', 'development', 'test']).default('production'),
     HOST: z.string().min(1).default('127.0.0.1'),

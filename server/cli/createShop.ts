@@ -56,6 +56,10 @@ async function inviteOwner(shopId: string, form: ShopForm, now: Date): Promise<s
 }
 
 async function main(): Promise<void> {
+  if (process.argv.includes('--help')) {
+    console.log(USAGE);
+    return;
+  }
   const form = await readForm();
   const db = openDb({
     url: env.DATABASE_URL,
