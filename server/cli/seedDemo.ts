@@ -12,8 +12,9 @@ import { demoShops } from '../../seeders/shops';
 import { formatPhone } from '#shared/domain/phone';
 
 const env = parseEnv(process.env);
-if (env.NODE_ENV === 'production')
+if (env.NODE_ENV === 'production') {
   throw new Error('The demo is not for production. Use npm run shop:create.');
+}
 
 /** Each installation has its own demo password, made from its secrets. */
 const password = `demo-${createHmac('sha256', env.CODE_KEY).update('demo password').digest('hex').slice(0, 12)}`;
