@@ -1,7 +1,7 @@
 /** The main job as one run: who books, who looks, who works, who hears. Nothing but the screens and the phone. */
 import { test } from './support/test';
 import { findsStub, opensStub } from './stories/crewLead';
-import { collects, endsTexts, hearsTheBell, writesBack } from './stories/customer';
+import { collects, endsMails, endsTexts, hearsTheBell, writesBack } from './stories/customer';
 import { takesIn } from './stories/gate';
 import { officeBooks } from './stories/office';
 import { readsSheet, repairsByKeyboard, repairsByTap, takesBack, twoAtOnce } from './stories/rail';
@@ -27,4 +27,5 @@ test('three machines, from the booking to the bell', async ({ page, another, wat
   await step('a text back is shown on Gate', () => writesBack(rosa, story));
   await step('STOP is honoured', () => endsTexts(rosa, story));
   await step('one is collected', () => collects(rosa, story));
+  await step('the link in an e-mail ends e-mails', () => endsMails(rosa, story));
 });

@@ -61,3 +61,16 @@ export async function collects(page: Page, story: Story): Promise<void> {
   await expect(letter.locator('[data-mail-text]')).toContainText(`No. ${story.machines[0].number}`);
   await letter.close();
 }
+
+/** The link at the foot of an e-mail ends e-mails, and only after a tap that says so. */
+export async function endsMails(page: Page, story: Story): Promise<void> {
+  const letter = await openMail(page, story.customer.email, /Collected/);
+  const address = await letter.locator('[data-mail-text] a[href*="/u/"]').getAttribute('href');
+  await letter.goto(address ?? '');
+  await expect(letter.getByRole('heading', { level: 1, name: 'No more e-mails?' })).toBeVisible();
+  await letter.getByRole('button', { name: 'Stop these e-mails' }).click();
+  await expect(letter.getByRole('heading', { level: 1, name: 'Done. No more e-mails.' })).toBeVisible();
+  await letter.reload();
+  await expect(letter.getByRole('heading', { level: 1, name: 'Done. No more e-mails.' })).toBeVisible();
+  await letter.close();
+}
