@@ -1,6 +1,7 @@
 import type { Ctx } from '#server/lib/context';
 import { withShop } from '#server/lib/db';
 import { unitShopOf } from '#server/lib/shops';
+import { reachOfOne } from '#server/messages/recipients';
 import { Account, Person } from '#server/models/index';
 import { abilitiesOf } from '#shared/policies/abilities';
 import type { Actor } from '#shared/domain/roles';
@@ -24,6 +25,7 @@ async function presentPerson(actor: Actor): Promise<SessionView['person']> {
     language: person.language,
     phone: person.phone,
     email: person.email,
+    textsOn: account !== null && (await reachOfOne(person)).texts === 'on',
     account: account && { id: account.id, name: account.name },
     shop: { slug, name, zone, phone: settings.phone },
     abilities: abilitiesOf(actor),

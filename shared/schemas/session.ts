@@ -77,6 +77,8 @@ export interface SessionView {
     /** In E.164, the person's own. */
     phone: string | null;
     email: string | null;
+    /** Of a customer: whether texts to that phone are agreed to and not stopped. */
+    textsOn: boolean;
     account: { id: string; name: string } | null;
     shop: { slug: string; name: string; zone: string; phone: string };
     abilities: Ability[];

@@ -22,6 +22,7 @@ const view = (roles: Role[]): SessionView => ({
     language: 'es',
     phone: null,
     email: null,
+    textsOn: false,
     account: roles.includes('manager') ? { id: 'a-1', name: 'High Course Roofing' } : null,
     shop,
     abilities: abilitiesOf({ roles }),

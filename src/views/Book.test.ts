@@ -58,6 +58,7 @@ const PERSON = {
   language: 'en',
   phone: '+13035550101',
   email: 'dana@example.com',
+  textsOn: false,
   account: { id: uuid(7), name: 'High Course Roofing' },
   shop: { slug: 'cinder-flat', name: 'Cinder Flat', zone: 'America/Denver', phone: '+13035550142' },
   abilities: ['book', 'fleet.view'],
@@ -142,11 +143,14 @@ async function toTheEnd(page: VueWrapper): Promise<void> {
   await field(page, 'Six digits').setValue('482 113');
 }
 
+const scrolledTo = vi.fn();
 enableAutoUnmount(afterEach);
 beforeEach(() => {
   sessionStorage.clear();
   localStorage.clear();
   vi.stubGlobal('scrollTo', vi.fn());
+  scrolledTo.mockClear();
+  Element.prototype.scrollIntoView = scrolledTo;
 });
 afterEach(() => vi.unstubAllGlobals());
 
@@ -292,6 +296,29 @@ describe('a guest', () => {
     expect(bodies[1]).toMatchObject({ arrivesAt: HALF_PAST_ONE, machines: [{ words: 'Knocks when cold' }] });
   });
 
+  it('is told that another code is on its way, and stands in its field', async () => {
+    pretendServer(answers());
+    const { page } = await open();
+    await toTheEnd(page);
+    await press(page, 'Send another code');
+    expect(page.get('[role="status"]').text()).toBe(
+      'A new code is on its way to (303) 555-0118. The one before no longer works.',
+    );
+    expect(field(page, 'Six digits').element).toHaveProperty('value', '');
+    expect(document.activeElement).toBe(field(page, 'Six digits').element);
+  });
+
+  it('is brought to what went wrong, from the button at the foot of a phone', async () => {
+    pretendServer(answers({ [CODES]: refusal(503, 'unavailable') }));
+    const { page } = await open();
+    await chooseMachineAndTime(page);
+    await press(page, 'Next');
+    await fillInWho(page);
+    await press(page, 'Text me the code');
+    const shown = scrolledTo.mock.contexts.at(-1) as HTMLElement;
+    expect(shown.querySelector('[role="alert"]')?.textContent).toContain('No answer from the shop');
+  });
+
   it('reads at the code that it was wrong', async () => {
     pretendServer(answers({ [BOOK]: refusal(400, 'code_wrong') }));
     const { page } = await open();
@@ -368,6 +395,20 @@ describe('a customer', () => {
       { words: 'No. 20Ironvale TW-8booked', off: true },
       { words: 'Not listedwrite it in', off: false },
     ]);
+  });
+
+  it('who has agreed to texts is not asked again, nor told that there are none', async () => {
+    const session = { body: { now: NOW, person: { ...PERSON, textsOn: true } } };
+    pretendServer(answers({ ...known, 'GET /api/session': session }));
+    const { page } = await open();
+    await press(page, 'No. 14');
+    await chooseMachineAndTime(page);
+    await press(page, 'Next');
+    expect(page.find('[role=checkbox]').exists()).toBe(false);
+    expect(page.text()).toContain('Answer STOP to any of the texts');
+    await press(page, 'Check and book');
+    expect(page.text()).toContain('We text you.');
+    expect(page.text()).not.toContain('No texts.');
   });
 
   it('books without a code', async () => {

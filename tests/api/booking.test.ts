@@ -1,10 +1,11 @@
 /** Booking a drop-off: what is written, what is refused and how, and what a repeated request gets. */
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { rows, withShop } from '#server/lib/db';
-import { hashToken } from '#server/lib/ids';
-import { Consent, Job, Link, Machine, Notice, Person, Tag, Visit } from '#server/models/index';
+import { hashToken, newId } from '#server/lib/ids';
+import { Consent, Job, Link, Machine, Notice, OptOut, Person, Tag, Visit } from '#server/models/index';
 import { isCode } from '#shared/domain/tagCode';
 import type { BookAnswer } from '#shared/schemas/booking';
+import type { SessionView } from '#shared/schemas/session';
 import type { TimesFullDetails, TimesView } from '#shared/schemas/shop';
 import type { StubView } from '#shared/schemas/stub';
 import { addMachine, makeShop, type TestShop } from '../support/factories';
@@ -122,6 +123,24 @@ describe('a booking that succeeds', () => {
       ),
     );
     expect(latest?.wording).toMatch(/mensajes/);
+  });
+
+  test('the session knows who has agreed to texts, and who has stopped them since', async () => {
+    await postBooking(manager, shop, bookBody(shop, { arrivesAt: ownHalfDay() })).expect(201);
+    const textsOn = async () => ((await manager.get('/api/session')).body as SessionView).person?.textsOn;
+    expect(await textsOn()).toBe(true);
+    const stop = await withShop(shop.id, () =>
+      OptOut.create({
+        shopId: shop.id,
+        id: newId(),
+        phone: shop.manager.phone ?? '',
+        optedOut: true,
+        source: 'text',
+        at: app.clock.now(),
+      }),
+    );
+    expect(await textsOn()).toBe(false);
+    await withShop(shop.id, () => stop.destroy());
   });
 
   test('without consent no consent is written', async () => {

@@ -232,6 +232,7 @@ test('says who is signed in and what they may, and nothing of the password', asy
       language: 'en',
       phone: shop.crewLead.phone,
       email: shop.crewLead.email,
+      textsOn: false,
       account: { id: shop.account.id, name: shop.account.name },
       shop: { slug: shop.slug, name: shop.name, zone: shop.zone, phone: shop.settings.phone },
       abilities: ['fleet.view', 'book'],

@@ -204,6 +204,7 @@ function signIn(roles: StaffRole[]): void {
       language: 'en',
       phone: null,
       email: 'marta@example.com',
+      textsOn: false,
       account: null,
       shop: { slug: 'cinder-flat', name: 'Cinder Flat Equipment Repair', zone: ZONE, phone: '+13035550142' },
       abilities: abilitiesOf({ roles }),

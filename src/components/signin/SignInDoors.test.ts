@@ -19,7 +19,7 @@ const sent: Answer = { body: { requestId: REQUEST, expiresAt: '2026-12-01T18:50:
 const signedIn = (roles: string[], account: object | null): Answer => ({
   body: {
     now: '2026-12-01T18:40:00.000Z',
-    person: { id: DANA, name: 'Dana', roles, language: 'en', account, shop, abilities: [] },
+    person: { id: DANA, name: 'Dana', roles, language: 'en', textsOn: false, account, shop, abilities: [] },
   },
 });
 
