@@ -79,7 +79,7 @@ describe('the front page of a shop', () => {
     expect(page.text()).toContain('Reparamos lo que usan las cuadrillas.');
     expect(page.text()).toContain('lun – vie');
     expect(page.text()).toContain('A la izquierda');
-    expect(page.get('a[href="/s/cinder-flat/book"]').text()).toBe('Reservar el banco');
+    expect(page.get('a[href="/s/cinder-flat/book"]').text()).toBe('Pedir cita');
   });
 
   it('promises no date and names no price', async () => {
