@@ -37,7 +37,7 @@ export async function readVisitState(visitId: string, now: Date): Promise<VisitS
      from jobs j
      join visits v on v.shop_id = j.shop_id and v.id = j.visit_id
      join machines m on m.shop_id = j.shop_id and m.id = j.machine_id
-     where j.visit_id = $1 order by j.created_at, j.id`,
+     where j.visit_id = $1 order by length(m.fleet_number), m.fleet_number, j.id`,
     [visitId],
   );
   const jobIds = found.map(({ id }) => id);

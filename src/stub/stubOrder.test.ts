@@ -31,9 +31,14 @@ describe('the order of coupons', () => {
     expect(orderCoupons(machines).map((one) => one.fleetNumber)).toEqual(['6', '4', '3', '2', '5', '1']);
   });
 
-  it('keeps the order of equals', () => {
-    const machines = [machine('9', 'repair'), machine('2', 'diagnosis'), machine('5', 'checked_in')];
-    expect(orderCoupons(machines).map((one) => one.fleetNumber)).toEqual(['9', '2', '5']);
+  it('hangs equals by the number painted on them, as people count', () => {
+    const machines = [
+      machine('17', 'repair'),
+      machine('3', 'diagnosis'),
+      machine('A-10', 'repair'),
+      machine('A-9', 'repair'),
+    ];
+    expect(orderCoupons(machines).map((one) => one.fleetNumber)).toEqual(['3', '17', 'A-9', 'A-10']);
   });
 });
 

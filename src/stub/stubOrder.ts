@@ -65,10 +65,12 @@ export function countGroups(machines: readonly StubMachine[]): { group: Group; c
   return counted.filter(({ count }) => count > 0);
 }
 
-/** The machines in the order of their coupons; equals keep the order of the answer. */
+const byNumber = new Intl.Collator('en', { numeric: true });
+
+/** The machines in the order of their coupons; equals by the number painted on them, No. 3 before No. 17. */
 export function orderCoupons(machines: readonly StubMachine[]): StubMachine[] {
   const rank = (machine: StubMachine): number => COUPON_ORDER.indexOf(groupOf(machine));
-  return machines.toSorted((a, b) => rank(a) - rank(b));
+  return machines.toSorted((a, b) => rank(a) - rank(b) || byNumber.compare(a.fleetNumber, b.fleetNumber));
 }
 
 /** When the first machine of the visit came in, or null while all are still expected. */
