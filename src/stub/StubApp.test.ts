@@ -129,7 +129,7 @@ describe('what the stub says', () => {
 
   it('leaves the cautions out once the machine is there', async () => {
     const page = await open(stubView());
-    expect(page.text()).not.toContain('Before you bring it in');
+    expect(page.text()).not.toContain('Before you bring');
   });
 
   it('says its progress in words and lists its history with times', async () => {
