@@ -18,7 +18,7 @@ const namespace = {
   set: (key: string, value: unknown) => als.getStore()?.set(key, value),
   bind: (fn: (...args: unknown[]) => unknown) => AsyncResource.bind(fn),
 };
-Sequelize.useCLS(namespace as unknown as Parameters<typeof Sequelize.useCLS>[0]);
+Sequelize.useCLS(namespace);
 
 export interface DbOptions {
   url: string;

@@ -69,8 +69,9 @@ async function refuseStrongOwner(owner: Pool): Promise<void> {
   const { rows: found } = await owner.query<{ name: string }>(
     'select rolname as name from pg_roles where rolname = current_user and (rolsuper or rolbypassrls)',
   );
-  if (found[0])
-    {throw new Error(`The database role ${found[0].name} is a superuser or bypasses row security.`);}
+  if (found[0]) {
+    throw new Error(`The database role ${found[0].name} is a superuser or bypasses row security.`);
+  }
 }
 
 interface Queue {

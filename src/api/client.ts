@@ -24,7 +24,7 @@ export class ApiError extends Error {
 /** The typed details of an error with that code; null for everything else. */
 export function detailsOf<Details extends object>(error: unknown, code: ErrorCode): Partial<Details> | null {
   if (!(error instanceof ApiError) || error.code !== code) return null;
-  return (error.details ?? {});
+  return error.details ?? {};
 }
 
 /** Told when the server no longer knows the session, wherever that is noticed. */
