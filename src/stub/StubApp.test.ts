@@ -145,7 +145,7 @@ describe('what the stub says', () => {
 describe('the language', () => {
   it('is the visit’s own, switches in place and is remembered', async () => {
     const page = await open(stubView({ language: 'es' }));
-    expect(page.get('h1').text()).toBe('Una en trabajo.');
+    expect(page.get('h1').text()).toBe('Una en proceso.');
     expect(document.documentElement.lang).toBe('es');
 
     await page.get('input[value="en"]').setValue();
