@@ -168,6 +168,14 @@ describe('times', () => {
     expect(page.text()).toContain('Times are MST');
   });
 
+  it('says that no time has room for so many machines', async () => {
+    pretendServer(answers({ [`${TIMES}1`]: times([NINE, ELEVEN, HALF_PAST_ONE]) }));
+    const { page } = await open();
+    expect(page.get('[role="alert"]').text()).toBe(
+      'No time in the next four weeks has room for 1 machine. Call the shop.',
+    );
+  });
+
   it('says when the chosen one has no room for one machine more, and does not go on with it', async () => {
     pretendServer(answers());
     const { page, router } = await open();
