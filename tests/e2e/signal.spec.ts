@@ -12,6 +12,7 @@ test('without a signal the stub shows what it knew, and catches up by itself', a
   await signInStaff(staff, 'Rosa');
   await page.goto(await stubPathOf(staff, await jobIn(staff, 'test_run')));
   await page.getByRole('radio', { name: 'English' }).check();
+  await expect(page.locator('html')).toHaveAttribute('lang', 'en');
   const head = page.getByRole('heading', { level: 1 });
   const known = await head.innerText();
   watch.allow(/ERR_INTERNET_DISCONNECTED GET \/api\/t\//);
