@@ -1,9 +1,9 @@
 import { describe, expect, it } from 'vitest';
 import { useTagKeys } from './useTagKeys';
 
-function keyboard(rails: string[][]) {
+function keyboard(rails: string[][], across: number | null = null) {
   const seen: string[] = [];
-  const keys = useTagKeys(rails, (id) => seen.push(id));
+  const keys = useTagKeys(rails, (id) => seen.push(id), across);
   const press = (...names: string[]) => {
     for (const key of names) keys.onKeydown(new KeyboardEvent('keydown', { key }));
     return seen.at(-1);
@@ -32,6 +32,14 @@ describe('the keyboard on the Rail', () => {
     const { press } = keyboard(rails);
     expect(press('End', 'ArrowDown')).toBe('c1');
     expect(press('ArrowDown', 'ArrowRight', 'ArrowUp')).toBe('c1');
+  });
+
+  it('goes from row to row where a rail hangs in several, and along it across their ends', () => {
+    const { press } = keyboard([['a1', 'a2', 'a3', 'a4', 'a5'], ['b1']], 3);
+    expect(press('ArrowDown')).toBe('a4');
+    expect(press('ArrowRight', 'ArrowDown')).toBe('b1');
+    expect(press('ArrowUp', 'ArrowUp', 'ArrowRight', 'ArrowRight', 'ArrowRight')).toBe('a4');
+    expect(press('End')).toBe('a5');
   });
 
   it('leaves other keys alone', () => {
