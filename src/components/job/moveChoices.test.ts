@@ -48,9 +48,18 @@ describe('where a tag may go', () => {
 
 describe('why it may not go elsewhere', () => {
   it('names the stages that come first', () => {
-    expect(why('booked', 'repair', 'counter')).toBe(
-      'From booked a machine goes to checked in, cancelled or no show first.',
+    expect(why('booked', 'repair', 'counter')).toBe('From booked a machine goes to checked in first.');
+    expect(why('checked_in', 'collected', 'counter')).toBe(
+      'From checked in a machine goes to diagnosis or ready first.',
     );
+  });
+
+  it('does not send a machine that stands in the shop on towards a cancelled booking', () => {
+    for (const end of ['cancelled', 'no_show'] as const) {
+      expect(why('test_run', end, 'counter')).toBe(
+        'Only for a machine that has not come. To end the work, use Stop work, give back as it is.',
+      );
+    }
   });
 
   it('names who could', () => {

@@ -90,12 +90,19 @@ function whyBarred(from: Stage, to: Stage, roles: readonly Role[], words: Words)
 }
 
 function noWay(problem: Extract<MoveProblem, { code: 'no_such_move' }>, words: Words): string {
-  const { from, to, allowed } = problem;
+  const { from, to } = problem;
   const correct = `if ${words(from)} was a mistake, correct it on the job sheet.`;
   if (isBack(from, to)) return `That lies behind: ${correct}`;
-  if (allowed.length === 0) return `${words(from)} is an end: ${correct}`;
-  return `From ${words(from)} a machine goes to ${anyOf(allowed.map(words))} first.`;
+  if (problem.allowed.length === 0) return `${words(from)} is an end: ${correct}`;
+  if (UNLESS_IT_CAME.includes(to)) {
+    return `Only for a machine that has not come. To end the work, use Stop work, give back as it is.`;
+  }
+  const onward = problem.allowed.filter((stage) => !UNLESS_IT_CAME.includes(stage));
+  return `From ${words(from)} a machine goes to ${anyOf(onward.map(words))} first.`;
 }
+
+/** How a booking ends that no machine came to. */
+const UNLESS_IT_CAME: readonly Stage[] = ['cancelled', 'no_show'];
 
 /** Earlier on the line and out of reach by any move. */
 function isBack(from: Stage, to: Stage): boolean {
