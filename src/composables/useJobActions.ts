@@ -14,6 +14,7 @@ import type { Stage } from '#shared/domain/stages';
 import { formatTime } from '#shared/domain/when';
 import type { FieldProblem } from '#shared/errors';
 import type { MachineView, MoveAnswer, MoveBody, MovedMeanwhileDetails } from '#shared/schemas/job';
+import { useDraftsStore } from '@/stores/drafts';
 import { useIntentKey } from './useIntentKey';
 import type { MoveDraft } from './useMoveForm';
 import type { JobWords } from './useJobWords';
@@ -47,6 +48,7 @@ export interface JobActionsOptions {
 export function useJobActions(options: JobActionsOptions) {
   const cache = useQueryCache();
   const intent = useIntentKey();
+  const drafts = useDraftsStore();
   const asked = shallowRef<{ job: MovableJob; choice: Choice } | null>(null);
   const made = shallowRef<Made | null>(null);
   const isBusy = ref(false);
@@ -112,6 +114,7 @@ export function useJobActions(options: JobActionsOptions) {
     try {
       const moved = await act();
       intent.done();
+      drafts.drop(job.id);
       asked.value = null;
       await reload();
       options.settled?.(moved);
@@ -144,7 +147,16 @@ export function useJobActions(options: JobActionsOptions) {
     return `It has moved meanwhile: ${details.by} put ${formatCode(job.tag)} on ${stage} at ${at}. Your move was not made.`;
   }
 
+  /** A correction made beside the moves: it takes the place of the last move at the foot. */
+  function corrected(job: { id: string; tag: string }, words: string): void {
+    clear();
+    drafts.drop(job.id);
+    made.value = { job, said: words, held: [], undo: null };
+    say(`${formatCode(job.tag)}: ${words}`);
+  }
+
   function cancel(): void {
+    if (asked.value) drafts.drop(asked.value.job.id);
     asked.value = null;
     trouble.value = '';
     fields.value = [];
@@ -178,6 +190,7 @@ export function useJobActions(options: JobActionsOptions) {
     submit,
     undo,
     cancel,
+    corrected,
     dismiss,
     say,
     reload,

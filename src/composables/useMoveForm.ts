@@ -40,6 +40,15 @@ export interface CheckInDraft {
   leftWithIt: string;
 }
 
+/** What a form holds, to be kept and put back. */
+export interface TypedMove {
+  outcome: Outcome | null;
+  partsReason: PartsReason | null;
+  note: string;
+  lines: Partial<Record<GuardKey, LineDraft>>;
+  checkIn: CheckInDraft;
+}
+
 export interface MoveFormOptions {
   choice: MaybeRefOrGetter<Choice>;
   version: MaybeRefOrGetter<number>;
@@ -138,6 +147,26 @@ export function useMoveForm(options: MoveFormOptions) {
     return Object.keys(found).length === 0;
   }
 
+  /** Everything typed, as plain values. */
+  function typed(): TypedMove {
+    return {
+      outcome: outcome.value,
+      partsReason: partsReason.value,
+      note: note.value,
+      lines: copyOf(lines),
+      checkIn: { ...checkIn },
+    };
+  }
+
+  /** Puts back what was typed before. */
+  function retype(before: TypedMove): void {
+    outcome.value = before.outcome;
+    partsReason.value = before.partsReason;
+    note.value = before.note;
+    Object.assign(lines, copyOf(before.lines));
+    Object.assign(checkIn, before.checkIn);
+  }
+
   /** Places the faults that the server found beside their fields. */
   function showServerFaults(fields: readonly FieldProblem[]): void {
     faults.value = Object.fromEntries(
@@ -158,6 +187,8 @@ export function useMoveForm(options: MoveFormOptions) {
     lineOf,
     body,
     check,
+    typed,
+    retype,
     showServerFaults,
   };
 }
@@ -244,4 +275,9 @@ function missingLine(guard: GuardKey): string {
 function placeSum(found: Record<string, string>, guard: GuardKey, line: LineDraft): void {
   if (!wantsSum(guard, line.mode) || !line.sum.trim() || parseCents(line.sum) !== null) return;
   found[`lines.${guard}.amountCents`] = 'A sum has digits and at most two decimals, like 236.40.';
+}
+
+/** Line by line: a reactive object cannot be cloned as a whole. */
+function copyOf(lines: TypedMove['lines']): TypedMove['lines'] {
+  return Object.fromEntries(Object.entries(lines).map(([guard, line]) => [guard, { ...line }]));
 }

@@ -182,6 +182,20 @@ describe('what may be done from the sheet', () => {
       reason: 'Moved the wrong tag',
       tell: true,
     });
+    expect(floor.text()).toContain('Corrected to Repair.');
+  });
+
+  it('lists signed lines newest first, as everything else on the sheet', async () => {
+    const line = { by: 'Marta Velez', guard: 'walk_round', mode: 'met', leftOut: '', why: '' } as const;
+    const more = { amountCents: null, voided: false };
+    await open({
+      lines: [
+        { id: 'l1', at: '2026-11-30T18:00:00.000Z', how: 'Walked round it', ...line, ...more },
+        { id: 'l2', at: '2026-12-01T18:00:00.000Z', how: 'Walked round it again', ...line, ...more },
+      ],
+    });
+    const words = section('Signed lines').textContent ?? '';
+    expect(words.indexOf('again')).toBeLessThan(words.lastIndexOf('Walked round it'));
   });
 
   it('offers no correction to whom the server gives none', async () => {
