@@ -14,9 +14,9 @@ const made: Made = {
   undo: { eventId: 'e1', until: UNTIL },
 };
 
-function bar(now: string) {
+function bar(now: string, more: Partial<Made> = {}) {
   return mount(UndoBar, {
-    props: { made, zone: 'America/Denver', now: new Date(now), busy: false },
+    props: { made: { ...made, ...more }, zone: 'America/Denver', now: new Date(now), busy: false },
     global: { stubs: { RouterLink: RouterLinkStub } },
   });
 }
@@ -29,6 +29,15 @@ describe('the bar after a move', () => {
     expect(wrapper.text()).toContain('Text to Dana Ruiz and e-mail to Ray Ortiz go at 11:41 am.');
     await wrapper.get('button').trigger('click');
     expect(wrapper.emitted('undo')).toHaveLength(1);
+  });
+
+  it('names the day where a text waits for the morning', () => {
+    const night = '2026-12-02T04:01:00.000Z';
+    const held = [
+      { personName: 'Dana Ruiz', channel: 'text' as const, releaseAt: '2026-12-02T15:00:00.000Z' },
+    ];
+    const undo = { eventId: 'e1', until: '2026-12-02T04:02:00.000Z' };
+    expect(bar(night, { held, undo }).text()).toContain('Text to Dana Ruiz goes at Wed 2 Dec, 8:00 am.');
   });
 
   it('offers no undo from the moment of release on, and shows the way to a correction', () => {
