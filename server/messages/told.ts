@@ -3,6 +3,8 @@ import { Message, Notice, Person } from '#server/models/index';
 import type { Channel } from './recipients';
 
 export interface Told {
+  /** The event that was told: the visit's where there is one, else the job's. */
+  eventId: string;
   personId: string;
   name: string;
   channel: Channel;
@@ -27,11 +29,11 @@ export async function presentTold(notices: readonly Notice[], messages: readonly
   const byId = new Map(messages.map((message) => [message.id, message]));
   const people = await Person.findAll({ where: { id: notices.map(({ personId }) => personId) } });
   const nameOf = new Map(people.map(({ id, name }) => [id, name]));
-  return notices.flatMap(({ messageId, personId, channel }) => {
+  return notices.flatMap(({ eventId, messageId, personId, channel }) => {
     const message = byId.get(messageId);
     if (!message || !hasGone(message)) return [];
     const at = message.settledAt ?? message.claimedAt ?? message.createdAt;
-    return [{ personId, name: nameOf.get(personId) ?? '', channel, at: at.toISOString() }];
+    return [{ eventId, personId, name: nameOf.get(personId) ?? '', channel, at: at.toISOString() }];
   });
 }
 

@@ -17,9 +17,10 @@ import {
 import { correctStages } from '#server/queries/correctStages';
 import { readEvents } from '#server/queries/jobEvents';
 import { railJob } from '#server/queries/railJobs';
-import type { Standing } from '#shared/domain/standing';
+import { takenBack, type Standing } from '#shared/domain/standing';
+import type { Stage } from '#shared/domain/stages';
 import { abilitiesOf } from '#shared/policies/abilities';
-import type { HistoryItem, JobSheet, SignedLineView } from '#shared/schemas/job';
+import type { HistoryItem, JobSheet, SignedLineView, ToldView } from '#shared/schemas/job';
 import { presentPeople } from './people';
 import { presentRailJob } from './railJob';
 
@@ -31,6 +32,7 @@ export async function presentJobSheet(ctx: Ctx, jobId: string): Promise<JobSheet
   const history = await readEvents(jobId);
   const found = await SignedLine.findAll({ where: { jobId }, order: [['at', 'ASC']] });
   const lines = found.map((line) => presentLine(line, history));
+  const correctTo = correctStages(ctx, job, history.standing, shop.zone);
   return {
     now: ctx.now.toISOString(),
     zone: shop.zone,
@@ -42,8 +44,8 @@ export async function presentJobSheet(ctx: Ctx, jobId: string): Promise<JobSheet
     lines,
     notices: await presentNotices(ctx, jobId, visit.id),
     texts: await textsOfVisit(visit.id),
-    told: await toldOf(await eventsToTellAgain(history)),
-    correctTo: correctStages(ctx, job, history.standing, shop.zone),
+    told: await presentTold(history.standing, correctTo),
+    correctTo,
     abilities: ctx.actor ? abilitiesOf(ctx.actor) : [],
   };
 }
@@ -86,11 +88,17 @@ function peopleOf(visit: Visit, job: Job): Promise<Person[]> {
   });
 }
 
-/** Everything but the booking: whichever of these a correction takes back, whoever was told of it may be told again. */
-async function eventsToTellAgain({ standing }: Standing<JobEvent>): Promise<string[]> {
-  const ids = standing.filter((event) => event.kind !== 'booked').map(({ id }) => id);
-  const ofVisit = await VisitEvent.findAll({ where: { jobEventId: ids } });
-  return [...ids, ...ofVisit.map(({ id }) => id)];
+/** Who has been told of the moves, each with the corrections that would make wrong what was told. */
+async function presentTold(standing: JobEvent[], correctTo: readonly Stage[]): Promise<ToldView[]> {
+  const moves = standing.filter((event) => event.kind !== 'booked');
+  const ofVisit = await VisitEvent.findAll({ where: { jobEventId: moves.map(({ id }) => id) } });
+  const moveOf = new Map(ofVisit.map(({ id, jobEventId }) => [id, jobEventId]));
+  const told = await toldOf([...moves.map(({ id }) => id), ...moveOf.keys()]);
+  return told.map(({ eventId, ...one }) => {
+    const moveId = moveOf.get(eventId) ?? eventId;
+    const isWrong = (stage: Stage) => takenBack(standing, stage).some(({ id }) => id === moveId);
+    return { ...one, wrongAfter: correctTo.filter(isWrong) };
+  });
 }
 
 function presentEvent(event: JobEvent, { undone, corrected }: Standing<JobEvent>, now: Date): HistoryItem {

@@ -235,6 +235,16 @@ export interface NoticeView {
   problem: string | null;
 }
 
+/** One person who has heard of what the job's events say. */
+export interface ToldView {
+  personId: string;
+  name: string;
+  channel: 'text' | 'email';
+  at: string;
+  /** The corrections that would make it wrong: back to these stages. */
+  wrongAfter: Stage[];
+}
+
 /** GET /api/shop/jobs/:tag */
 export interface JobSheet {
   now: string;
@@ -254,7 +264,7 @@ export interface JobSheet {
   notices: NoticeView[];
   texts: InboundTextView[];
   /** Who has been told of what a correction could take back; it offers one text to those whom it makes wrong. */
-  told: { personId: string; name: string; channel: 'text' | 'email'; at: string }[];
+  told: ToldView[];
   /** Stages that the reader may correct it back to; empty where he may not. */
   correctTo: Stage[];
   /** What the reader may do at large; `job.abilities` says what with this job. */

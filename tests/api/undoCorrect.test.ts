@@ -342,6 +342,18 @@ describe('correct', () => {
       expect((await noticesOf(visitId)).filter((notice) => notice === 'corrected standing')).toHaveLength(1);
     });
 
+    test('each correction is named that would make wrong what was heard', async () => {
+      const { tag, visitId } = await booked();
+      await bringTo(clients.owner, tag, 'checked_in');
+      pass(app, 2 * GRACE);
+      await sendAll(visitId);
+      await bringTo(clients.owner, tag, 'repair');
+      const { told, correctTo } = await sheetOf(clients.owner, tag);
+      expect(correctTo).toEqual(expect.arrayContaining(['booked', 'checked_in', 'diagnosis']));
+      // That it came in stays true wherever in the shop it is put back to.
+      expect(told.map(({ wrongAfter }) => wrongAfter)).toEqual([['booked']]);
+    });
+
     test('and gets none when not', async () => {
       const { tag, visitId } = await booked();
       await bringTo(clients.owner, tag, 'checked_in');

@@ -160,8 +160,16 @@ describe('what may be done from the sheet', () => {
   it('corrects with a stage and a reason, says who was told, and sends them one text', async () => {
     await open(
       {
-        correctTo: ['diagnosis', 'repair'],
-        told: [{ personId: dana.id, name: 'Dana Ruiz', channel: 'text', at: '2026-12-01T17:00:00.000Z' }],
+        correctTo: ['checked_in', 'diagnosis', 'repair'],
+        told: [
+          {
+            personId: dana.id,
+            name: 'Dana Ruiz',
+            channel: 'text',
+            at: '2026-12-01T17:00:00.000Z',
+            wrongAfter: ['diagnosis', 'repair'],
+          },
+        ],
       },
       ['counter'],
       { 'POST /api/shop/jobs/7K4QM2/corrections': buildMoveAnswer(buildRailJob({ stage: 'repair' })) },
@@ -172,7 +180,10 @@ describe('what may be done from the sheet', () => {
     expect(floor.text()).toContain('Choose where it really is.');
     expect(floor.text()).toContain('A blank reason does not count.');
     expect(floor.sent()).toHaveLength(0);
+    await floor.fill('Checked in', 'x');
+    expect(floor.text()).toContain('Nobody has been told anything that this would make wrong.');
     await floor.fill('Repair', 'x');
+    expect(floor.text()).toContain('Already told: Dana Ruiz by text 10:00 am.');
     await floor.fill('Why', 'Moved the wrong tag');
     await floor.submit();
     expect(floor.sent()).toHaveLength(1);
