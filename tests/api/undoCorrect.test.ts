@@ -347,7 +347,8 @@ describe('correct', () => {
       await bringTo(clients.owner, tag, 'checked_in');
       pass(app, 2 * GRACE);
       await sendAll(visitId);
-      await bringTo(clients.owner, tag, 'repair');
+      await postMove(clients.owner, tag, 'diagnosis', { lines: [met('walk_round')] });
+      await postMove(clients.owner, tag, 'test_run');
       const { told, correctTo } = await sheetOf(clients.owner, tag);
       expect(correctTo).toEqual(expect.arrayContaining(['booked', 'checked_in', 'diagnosis']));
       // That it came in stays true wherever in the shop it is put back to.
