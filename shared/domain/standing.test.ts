@@ -62,12 +62,12 @@ describe('foldEvents', () => {
     });
   });
 
-  it('keeps nothing but the booking where the job never stood at the corrected stage', () => {
+  it('keeps what lies before the corrected stage where the job never stood at it', () => {
     const way = [booked, moved('1', 'checked_in'), moved('2', 'diagnosis'), moved('3', 'test_run')];
     expect(fold(...way, corrected('4', 'repair'))).toEqual({
-      standing: ['b', '4'],
+      standing: ['b', '1', '2', '4'],
       undone: [],
-      corrected: ['1', '2', '3'],
+      corrected: ['3'],
     });
   });
 

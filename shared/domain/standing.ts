@@ -1,8 +1,8 @@
 /**
  * Which of a job's events still stand. An undone move is taken back; a correction takes back all moves since the job
- * last stood at the stage it is put back to. Moves taken back void their signed lines.
+ * last stood at the stage it is put back to, or before it. Moves taken back void their signed lines.
  */
-import type { Stage } from './stages';
+import { PROGRESS, type Stage } from './stages';
 
 export interface EventLike {
   id: string;
@@ -41,11 +41,19 @@ export function foldEvents<E extends EventLike>(events: readonly E[]): Standing<
   return { standing, undone, corrected };
 }
 
-/** The standing events that a correction back to `stage` takes back: those after the job last stood there. */
+/**
+ * The standing events that a correction back to `stage` takes back: those after the job last stood there; where it
+ * never did, those after it last stood at a stage before that one.
+ */
 export function takenBack<E extends EventLike>(standing: readonly E[], stage: Stage | null): E[] {
-  const last = standing.findLastIndex((event) => event.toStage === stage);
-  // A stage that it never stood at: all but the booking itself.
+  const stood = standing.findLastIndex((event) => event.toStage === stage);
+  const last = stood >= 0 ? stood : standing.findLastIndex((event) => isBefore(event.toStage, stage));
+  // The booking itself is never taken back.
   return standing.slice(Math.max(last, 0) + 1);
+}
+
+function isBefore(one: Stage | null, other: Stage | null): boolean {
+  return one !== null && other !== null && PROGRESS.indexOf(one) < PROGRESS.indexOf(other);
 }
 
 /**
