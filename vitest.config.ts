@@ -12,6 +12,8 @@ const withPostgres = {
 export default defineConfig({
   test: {
     ...common,
+    // Files wait for PostgreSQL and for hashing half of their time, so that two share two cores well.
+    maxWorkers: 2,
     projects: [
       {
         extends: true,
