@@ -1,5 +1,4 @@
-import { enableAutoUnmount } from '@vue/test-utils';
-import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
+import { describe, expect, it } from 'vitest';
 import {
   uuid,
   NOISY,
@@ -22,19 +21,11 @@ import {
   chooseMachineAndTime,
   fillInWho,
   toTheEnd,
+  freshBookPages,
 } from '#tests/support/bookPage';
 import { pretendServer, refusal } from '#tests/support/mountPage';
 
-const scrolledTo = vi.fn();
-enableAutoUnmount(afterEach);
-beforeEach(() => {
-  sessionStorage.clear();
-  localStorage.clear();
-  vi.stubGlobal('scrollTo', vi.fn());
-  scrolledTo.mockClear();
-  Element.prototype.scrollIntoView = scrolledTo;
-});
-afterEach(() => vi.unstubAllGlobals());
+freshBookPages();
 
 describe('times', () => {
   it('shows a full time as full, and offers nothing to choose in it', async () => {

@@ -1,6 +1,6 @@
 /** The booking page over a server that answers from a table: what its tests open, press and fill in. */
-import { flushPromises, type VueWrapper } from '@vue/test-utils';
-import { vi } from 'vitest';
+import { enableAutoUnmount, flushPromises, type VueWrapper } from '@vue/test-utils';
+import { afterEach, beforeEach, vi } from 'vitest';
 import Book from '@/views/Book.vue';
 import { mountPage, type Answer } from './mountPage';
 import type { BookAnswer } from '#shared/schemas/booking';
@@ -145,4 +145,19 @@ export async function toTheEnd(page: VueWrapper): Promise<void> {
   await fillInWho(page);
   await press(page, 'Text me the code');
   await field(page, 'Six digits').setValue('482 113');
+}
+
+/** Each test begins with an empty browser. Called once in a file; gives what was scrolled to. */
+export function freshBookPages() {
+  const scrolledTo = vi.fn();
+  enableAutoUnmount(afterEach);
+  beforeEach(() => {
+    sessionStorage.clear();
+    localStorage.clear();
+    vi.stubGlobal('scrollTo', vi.fn());
+    scrolledTo.mockClear();
+    Element.prototype.scrollIntoView = scrolledTo;
+  });
+  afterEach(() => vi.unstubAllGlobals());
+  return { scrolledTo };
 }
